@@ -1,0 +1,178 @@
+"""The fields F_p for every prime p < 2^63, on python-flint."""
+
+from collections.abc import Callable, Iterable, Iterator, Sequence
+from dataclasses import dataclass
+from functools import lru_cache
+from random import Random
+from typing import Any
+
+from flint import fmpq, fmpz, fq_default_ctx, nmod, nmod_mat
+
+from trivector.errors import EntryError, FieldError
+from trivector.fields.entries import parse_rational, shorten
+
+__all__ = ["Identity", "PrimeField", "prime_field"]
+
+# A random linear form over a field with q elements is general with
+# probability about 1 − c/q; a field with fewer elements is extended, but no
+# further than needed, since an extension of degree r costs r^3 times as much.
+_ENOUGH_ELEMENTS = 64
+_LARGEST = 2**63
+
+
+@dataclass(frozen=True)
+class Identity:
+    """The reduction of a finite field: the identity, so every rank is exact."""
+
+    field: Any
+    exact: bool = True
+
+    @property
+    def name(self) -> str:
+        return f"over {self.field.name}"
+
+    def rows(self, rows: Iterable[Sequence[Any]]) -> list[list[Any]]:
+        return [list(row) for row in rows]
+
+
+@dataclass(frozen=True)
+class PrimeField:
+    """The field with p elements. Make it with `prime_field`.
+
+    Examples
+    --------
+    >>> from trivector.fields import prime_field
+    >>> prime_field(7).element("3/4")
+    6
+    """
+
+    order: int
+
+    @property
+    def name(self) -> str:
+        return f"F_{self.order}"
+
+    @property
+    def closure_name(self) -> str:
+        return f"the algebraic closure of F_{self.order}"
+
+    @property
+    def characteristic(self) -> int:
+        return self.order
+
+    @property
+    def zero(self) -> nmod:
+        return nmod(0, self.order)
+
+    @property
+    def one(self) -> nmod:
+        return nmod(1, self.order)
+
+    def element(self, value: Any) -> nmod:
+        if isinstance(value, nmod):
+            if value.modulus() != self.order:
+                raise EntryError(
+                    f"entry {value} is modulo {value.modulus()}, not {self.order}; convert it first"
+                )
+            return value
+        rational = parse_rational(value)
+        try:
+            return self.from_rational(rational)
+        except ZeroDivisionError:
+            raise EntryError(
+                f"entry {shorten(value)} has a denominator that is 0 modulo {self.order}; "
+                "correct the fraction or choose another field"
+            ) from None
+
+    def from_rational(self, value: fmpq) -> nmod:
+        """The residue of a rational; ZeroDivisionError if p divides its denominator."""
+        p = self.order
+        numerator = nmod(int(value.p % p), p)
+        return numerator if value.q == 1 else numerator / nmod(int(value.q % p), p)
+
+    def format(self, value: nmod) -> int:
+        return int(value)
+
+    def sort_key(self, value: nmod) -> int:
+        return int(value)
+
+    def random_element(self, rng: Random, *, height: int = 9) -> nmod:
+        return nmod(rng.randrange(self.order), self.order)
+
+    def zero_matrix(self, nrows: int, ncols: int) -> nmod_mat:
+        return nmod_mat(nrows, ncols, self.order)
+
+    def matrix(self, rows: Sequence[Sequence[Any]], ncols: int) -> nmod_mat:
+        return nmod_mat(len(rows), ncols, [x for row in rows for x in row], self.order)
+
+    def integral_basis(self, rows: Sequence[Sequence[nmod]]) -> list[list[nmod]]:
+        return [list(row) for row in rows]
+
+    def reductions(self) -> Iterator[Identity]:
+        yield Identity(self)
+
+    def generic_blocks(self, rng: Random, attempt: int = 0) -> tuple[int, Callable[[], nmod_mat]]:
+        degree = 1
+        while self.order**degree < min(_ENOUGH_ELEMENTS, 4 << attempt):
+            degree += 1
+        powers = _powers_of_root(self.order, degree)
+
+        def draw() -> nmod_mat:
+            block = nmod_mat(degree, degree, self.order)
+            for power in powers:
+                block += power * rng.randrange(self.order)
+            return block
+
+        return degree, draw
+
+    def to_spec(self) -> str:
+        return self.name
+
+    def __repr__(self) -> str:
+        return self.name
+
+
+def _powers_of_root(p: int, degree: int) -> list[nmod_mat]:
+    """1, C, …, C^(r−1) for the companion matrix C of an irreducible polynomial."""
+    identity = nmod_mat(degree, degree, p)
+    companion = nmod_mat(degree, degree, p)
+    coefficients = fq_default_ctx(p, degree).modulus().coeffs() if degree > 1 else [0, 1]
+    for i in range(degree):
+        identity[i, i] = 1
+        if i + 1 < degree:
+            companion[i, i + 1] = 1
+        companion[degree - 1, i] = -nmod(int(coefficients[i]), p)
+    powers = [identity]
+    while len(powers) < degree:
+        powers.append(powers[-1] * companion)
+    return powers
+
+
+@lru_cache(maxsize=256)
+def prime_field(p: int) -> PrimeField:
+    """The field with p elements.
+
+    Parameters
+    ----------
+    p : int
+        A prime, 2 and 3 included, less than 2^63.
+
+    Raises
+    ------
+    FieldError
+        If p is not a prime (its factors are named) or too large.
+    """
+    if p >= _LARGEST:
+        raise FieldError(
+            f"field F_{shorten(p)}: the prime must be less than 2^63; use a smaller one"
+        )
+    if p < 2 or not fmpz(p).is_prime():
+        raise FieldError(f"field F_{p}: {p} is not a prime{_factors(p)}; use a prime")
+    return PrimeField(p)
+
+
+def _factors(n: int) -> str:
+    if n < 4:
+        return ""
+    powers = (f"{q}^{e}" if e > 1 else str(q) for q, e in fmpz(n).factor())
+    return f" ({n} = {'·'.join(powers)})"

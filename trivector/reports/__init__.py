@@ -1,0 +1,5 @@
+"""How is it shown?"""
+
+from trivector.reports.examination import examination_report
+
+__all__ = ["examination_report"]
