@@ -6,17 +6,17 @@ from functools import lru_cache
 from random import Random
 from typing import Any
 
-from flint import fmpq, fmpz, fq_default_ctx, nmod, nmod_mat
+from flint import fmpq, fmpz, fq_default_ctx, nmod, nmod_mat, nmod_poly
 
 from trivector.errors import EntryError, FieldError
 from trivector.fields.entries import parse_rational, shorten
 
-__all__ = ["Identity", "PrimeField", "prime_field"]
+__all__ = ["ENOUGH_ELEMENTS", "Identity", "PrimeField", "companion_blocks", "prime_field"]
 
 # A random linear form over a field with q elements is general with
 # probability about 1 − c/q; a field with fewer elements is extended, but no
 # further than needed, since an extension of degree r costs r^3 times as much.
-_ENOUGH_ELEMENTS = 64
+ENOUGH_ELEMENTS = 64
 _LARGEST = 2**63
 
 
@@ -111,19 +111,30 @@ class PrimeField:
     def reductions(self) -> Iterator[Identity]:
         yield Identity(self)
 
-    def generic_blocks(self, rng: Random, attempt: int = 0) -> tuple[int, Callable[[], nmod_mat]]:
+    def generic_blocks(self, rng: Random, attempt: int = 0) -> tuple[int, Callable[[], Any]]:
         degree = 1
-        while self.order**degree < min(_ENOUGH_ELEMENTS, 4 << attempt):
+        while self.order**degree < min(ENOUGH_ELEMENTS, 4 << attempt):
             degree += 1
-        powers = _powers_of_root(self.order, degree)
+        modulus = fq_default_ctx(self.order, degree).modulus().coeffs() if degree > 1 else [0, 1]
+        return companion_blocks(self, [self.element(int(c)) for c in modulus], rng)
 
-        def draw() -> nmod_mat:
-            block = nmod_mat(degree, degree, self.order)
-            for power in powers:
-                block += power * rng.randrange(self.order)
-            return block
+    def factor(self, coefficients: Sequence[Any]) -> list[tuple[list[Any], int]]:
+        _, factors = nmod_poly([int(c) for c in coefficients], self.order).factor()
+        found = [(list(f.coeffs()), int(e)) for f, e in factors]
+        return sorted(found, key=lambda item: (len(item[0]), [int(c) for c in item[0]]))
 
-        return degree, draw
+    def from_code(self, code: int) -> nmod:
+        """The element with a given `sort_key`."""
+        return nmod(code, self.order)
+
+    def operation_tables(self) -> tuple[Any, Any]:
+        """(add, multiply), the p×p tables of codes, as numpy arrays of uint16."""
+        import numpy as np
+
+        codes = np.arange(self.order, dtype=np.int64)
+        add = (codes[:, None] + codes[None, :]) % self.order
+        multiply = codes[:, None] * codes[None, :] % self.order
+        return add.astype(np.uint16), multiply.astype(np.uint16)
 
     def to_spec(self) -> str:
         return self.name
@@ -132,20 +143,29 @@ class PrimeField:
         return self.name
 
 
-def _powers_of_root(p: int, degree: int) -> list[nmod_mat]:
-    """1, C, …, C^(r−1) for the companion matrix C of an irreducible polynomial."""
-    identity = nmod_mat(degree, degree, p)
-    companion = nmod_mat(degree, degree, p)
-    coefficients = fq_default_ctx(p, degree).modulus().coeffs() if degree > 1 else [0, 1]
-    for i in range(degree):
-        identity[i, i] = 1
-        if i + 1 < degree:
-            companion[i, i + 1] = 1
-        companion[degree - 1, i] = -nmod(int(coefficients[i]), p)
-    powers = [identity]
-    while len(powers) < degree:
-        powers.append(powers[-1] * companion)
-    return powers
+def companion_blocks(
+    field: Any, modulus: Sequence[Any], rng: Random
+) -> tuple[int, Callable[[], Any]]:
+    """Random elements of k[x]/(modulus), as the matrices by which they multiply.
+
+    ``modulus`` is monic and irreducible over ``field``, constant term first.
+    """
+    degree = len(modulus) - 1
+    companion = [
+        [field.one if j == i + 1 else field.zero for j in range(degree)] for i in range(degree)
+    ]
+    companion[degree - 1] = [-c for c in modulus[:degree]]
+    step = field.matrix(companion, degree)
+
+    def draw() -> Any:
+        # Row i is (random element)·x^i, so each row is the one before times x.
+        rows = field.matrix([[field.random_element(rng) for _ in range(degree)]], degree)
+        powers = [rows]
+        while len(powers) < degree:
+            powers.append(powers[-1] * step)
+        return field.matrix([row for power in powers for row in power.tolist()], degree)
+
+    return degree, draw
 
 
 @lru_cache(maxsize=256)

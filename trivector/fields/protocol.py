@@ -133,6 +133,14 @@ class Field(Protocol):
         """
         ...
 
+    def factor(self, coefficients: Sequence[Any]) -> list[tuple[list[Any], int]]:
+        """The monic irreducible factors of Σ c_i·t^i with multiplicities.
+
+        Sorted by degree, then by coefficients; the leading coefficient of the
+        polynomial is dropped.
+        """
+        ...
+
     def to_spec(self) -> str | dict[str, Any]:
         """What stands under ``"field"`` in a document."""
         ...

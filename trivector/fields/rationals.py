@@ -6,7 +6,7 @@ from functools import cached_property
 from random import Random
 from typing import Any
 
-from flint import fmpq, fmpq_mat, fmpz, fmpz_mat
+from flint import fmpq, fmpq_mat, fmpq_poly, fmpz, fmpz_mat
 
 from trivector.errors import BadReductionError
 from trivector.fields.entries import parse_rational
@@ -110,11 +110,22 @@ class Rationals:
     def generic_blocks(self, rng: Random, attempt: int = 0) -> tuple[int, Callable[[], fmpq_mat]]:
         return 1, lambda: fmpq_mat(1, 1, [self.random_element(rng, height=10**6)])
 
+    def factor(self, coefficients: Sequence[Any]) -> list[tuple[list[Any], int]]:
+        polynomial = fmpq_poly([fmpq(c) for c in coefficients])
+        _, factors = polynomial.factor()
+        found = [(_monic(list(f.coeffs())), int(e)) for f, e in factors]
+        return sorted(found, key=lambda item: (len(item[0]), item[0]))
+
     def to_spec(self) -> str:
         return self.name
 
     def __repr__(self) -> str:
         return self.name
+
+
+def _monic(coefficients: list[Any]) -> list[fmpq]:
+    leading = fmpq(coefficients[-1])
+    return [fmpq(c) / leading for c in coefficients]
 
 
 def _primitive(row: Sequence[fmpq]) -> list[fmpz]:
