@@ -34,7 +34,7 @@ def add_limits(parser: argparse.ArgumentParser) -> None:
         "--max-degree", type=_positive, default=12, metavar="N", help="of the Hilbert function"
     )
     group.add_argument(
-        "--max-columns", type=_positive, default=2500, metavar="N", help="of a matrix"
+        "--max-columns", type=_positive, default=1200, metavar="N", help="of a matrix"
     )
     group.add_argument(
         "--max-primes", type=_positive, default=5, metavar="N", help="tried for data over Q"

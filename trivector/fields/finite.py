@@ -202,7 +202,9 @@ class ExtensionField:
 
     def from_coefficients(self, coefficients: Sequence[int]) -> FiniteElement:
         """Σ c_i·a^i."""
-        return FiniteElement(self.context([int(c) for c in coefficients]))
+        ints = [int(c) for c in coefficients]
+        # The stubs of python-flint leave out lists, which its documentation names.
+        return FiniteElement(self.context(ints))  # type: ignore[arg-type]
 
     def coefficients(self, value: FiniteElement) -> list[int]:
         """The c_i of Σ c_i·a^i, r of them."""
@@ -247,6 +249,10 @@ class ExtensionField:
                 matrix[i, j] = value
         return matrix
 
+    @property
+    def work_factor(self) -> int:
+        return 2 if self.order <= LARGEST_TABLE else 8
+
     def integral_basis(self, rows: Sequence[Sequence[Any]]) -> list[list[Any]]:
         return [list(row) for row in rows]
 
@@ -269,7 +275,9 @@ class ExtensionField:
 
     def factor(self, coefficients: Sequence[Any]) -> list[tuple[list[Any], int]]:
         ring = fq_default_poly_ctx(self.context)
-        _, factors = ring([c.value for c in coefficients]).factor()
+        # The stubs of python-flint leave out lists, which its documentation names.
+        values: Any = [c.value for c in coefficients]
+        _, factors = ring(values).factor()
         found = [([FiniteElement(c) for c in f.coeffs()], int(e)) for f, e in factors]
         return sorted(found, key=lambda item: (len(item[0]), [self.sort_key(c) for c in item[0]]))
 

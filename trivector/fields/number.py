@@ -208,6 +208,10 @@ class NumberField:
                 matrix[i, j] = self.element(value)
         return matrix
 
+    @property
+    def work_factor(self) -> int:
+        return 8
+
     def integral_basis(self, rows: Sequence[Sequence[Any]]) -> list[list[Any]]:
         return [list(row) for row in rows]
 
@@ -227,18 +231,16 @@ class NumberField:
         return 1, lambda: self.matrix([[rng.randint(-(10**6), 10**6)]], 1)
 
     def factor(self, coefficients: Sequence[Any]) -> list[tuple[list[Any], int]]:
-        """By sympy, over the same field."""
-        from sympy import QQ, Poly, Rational, Symbol
+        """By sympy, in the algebraic field of the first root of the modulus."""
+        from sympy import QQ, CRootOf, Poly, Symbol
 
         t = Symbol("t")
-        a = Symbol("a")
-        root = self._sympy_root()
-        domain = QQ.algebraic_field(root)
+        modulus = Poly([str(c) for c in reversed(self.modulus)], t)
+        domain = QQ.algebraic_field(CRootOf(modulus, 0))
 
         def to_domain(value: NumberElement) -> Any:
             return domain([QQ(int(c.p), int(c.q)) for c in reversed(self.coefficients(value))])
 
-        del a, Rational
         polynomial = Poly.from_list(
             [to_domain(self.element(c)) for c in reversed(coefficients)], t, domain=domain
         )
@@ -252,12 +254,6 @@ class NumberField:
             ]
             found.append(([value / values[-1] for value in values], int(exponent)))
         return sorted(found, key=lambda i: (len(i[0]), [self.sort_key(c) for c in i[0]]))
-
-    def _sympy_root(self) -> Any:
-        from sympy import CRootOf, Poly, Symbol
-
-        x = Symbol("x")
-        return CRootOf(Poly([str(c) for c in reversed(self.modulus)], x), 0)
 
     def to_spec(self) -> dict[str, str]:
         return {"modulus": self.modulus_text}

@@ -105,6 +105,10 @@ class PrimeField:
     def matrix(self, rows: Sequence[Sequence[Any]], ncols: int) -> nmod_mat:
         return nmod_mat(len(rows), ncols, [x for row in rows for x in row], self.order)
 
+    @property
+    def work_factor(self) -> int:
+        return 1
+
     def integral_basis(self, rows: Sequence[Sequence[nmod]]) -> list[list[nmod]]:
         return [list(row) for row in rows]
 

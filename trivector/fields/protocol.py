@@ -108,6 +108,11 @@ class Field(Protocol):
         """The matrix with these rows of scalars (or ints)."""
         ...
 
+    @property
+    def work_factor(self) -> int:
+        """How many times narrower matrices must be than python-flint's to cost the same."""
+        ...
+
     def integral_basis(self, rows: Sequence[Sequence[Any]]) -> list[list[Any]]:
         """Another basis of the row space whose entries are as small as may be.
 

@@ -85,6 +85,10 @@ class Rationals:
     def matrix(self, rows: Sequence[Sequence[Any]], ncols: int) -> fmpq_mat:
         return fmpq_mat(len(rows), ncols, [x for row in rows for x in row])
 
+    @property
+    def work_factor(self) -> int:
+        return 1
+
     def integral_basis(self, rows: Sequence[Sequence[fmpq]]) -> list[list[fmpq]]:
         """A reduced basis of the integer points of the row space.
 

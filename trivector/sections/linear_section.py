@@ -477,10 +477,10 @@ class _Examination:
         algebra = QuadricAlgebra(field, len(rows), restricted_quadrics(rows, n, field.zero))
         while algebra.top < top and algebra.hilbert[-1]:
             nrows, ncols = algebra.next_shape()
-            if ncols > self.limits.max_columns:
+            if ncols > self.limits.columns(field):
                 return None, (
                     f"degree {algebra.top + 1} over {field.name} needs a matrix with {ncols} "
-                    f"columns, more than {self.limits.max_columns}"
+                    f"columns, more than {self.limits.columns(field)}"
                 )
             self.on_progress(
                 f"degree {algebra.top + 1}: {nrows} × {ncols} matrix over {field.name}"

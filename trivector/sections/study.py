@@ -32,14 +32,19 @@ class Limits:
     max_degree : int
         The highest degree of the Hilbert function.
     max_columns : int
-        The widest matrix that is row-reduced.
+        The widest matrix that is row-reduced over ℚ or F_p; over F_q half
+        as wide, over number fields and very large F_q an eighth.
     max_primes : int
         How many primes are tried for data over an infinite field.
     """
 
     max_degree: int = 12
-    max_columns: int = 2500
+    max_columns: int = 1200
     max_primes: int = 5
+
+    def columns(self, field: Field) -> int:
+        """The widest matrix over this field."""
+        return self.max_columns // field.work_factor
 
 
 @dataclass(frozen=True)
@@ -155,10 +160,10 @@ def _study_directly(
         if top >= limits.max_degree:
             return result(limit=f"degree {limits.max_degree}")
         nrows, ncols = algebra.next_shape()
-        if ncols > limits.max_columns:
+        most = limits.columns(algebra.field)
+        if ncols > most:
             return result(
-                limit=f"degree {top + 1} needs a matrix with {ncols} columns, "
-                f"more than {limits.max_columns}"
+                limit=f"degree {top + 1} needs a matrix with {ncols} columns, more than {most}"
             )
         on_progress(f"degree {top + 1}: {nrows} × {ncols} matrix over {algebra.field.name}")
         algebra.extend()
@@ -183,7 +188,7 @@ def _is_proper(
         cut = (field.matrix(coefficients, len(rows)) * field.matrix(rows, len(rows[0]))).tolist()
         algebra = QuadricAlgebra(field, size, restricted_quadrics(cut, n, field.zero))
         while algebra.top < top and algebra.hilbert[-1]:
-            if algebra.next_shape()[1] > limits.max_columns:
+            if algebra.next_shape()[1] > limits.columns(field):
                 return False
             algebra.extend()
         if algebra.hilbert[-1] == 0:

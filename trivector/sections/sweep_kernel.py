@@ -243,6 +243,16 @@ def _prepare_line(
     return width
 
 
+@_inlined
+def _fill_block(
+    block: Codes, reduced: Codes, slope: Codes, fixed: int, width: int, t: int, tables: Tables
+) -> None:
+    """The moving rows at the point t of a line."""
+    for row in range(slope.shape[0]):
+        for k in range(width):
+            block[row, k] = tables.add[reduced[fixed + row, k], tables.mul[t, slope[row, k]]]
+
+
 @_cached
 def flagged_points(
     base: Codes,
@@ -315,19 +325,12 @@ def flagged_points(
         if width == 0:
             continue
         for t in range(q):
-            # At most two rounds: the first decides whether the columns depend, on
-            # a block which the second builds again to find out how.
-            dependent = width > moving
-            for _ in range(2):
-                for row in range(moving):
-                    for k in range(width):
-                        block[row, k] = add[reduced[fixed + row, k], mul[t, slope[row, k]]]
-                if dependent or _has_independent_columns(block, moving, width, tables):
-                    break
-                dependent = True
-            if not dependent:
-                continue
+            if width <= moving:
+                _fill_block(block, reduced, slope, fixed, width, t, tables)
+                if _has_independent_columns(block, moving, width, tables):
+                    continue
             if nquadrics != 0:
+                _fill_block(block, reduced, slope, fixed, width, t, tables)
                 rank = _reduce_rows(block, moving, width, pivots, tables)
                 nullity = width - rank
                 if nullity <= _LARGEST_NULLITY:
