@@ -261,7 +261,7 @@ class ExtensionField:
 
     def generic_blocks(self, rng: Random, attempt: int = 0) -> tuple[int, Callable[[], Any]]:
         degree = 1
-        while self.order**degree < min(ENOUGH_ELEMENTS, 4 << attempt):
+        while self.order**degree < min(ENOUGH_ELEMENTS, 4 << 2 * attempt):
             degree += 1
         return companion_blocks(self, self._irreducible(degree, rng), rng)
 

@@ -10,6 +10,7 @@ from typing import Any
 from trivector.fields.protocol import Field, Matrix
 
 __all__ = [
+    "RankCounter",
     "Rows",
     "dependencies",
     "echelon",
@@ -20,7 +21,6 @@ __all__ = [
     "reduce_vector",
     "row_space",
     "solve",
-    "sparse_rank",
     "unit_rows",
 ]
 
@@ -61,34 +61,45 @@ def rank(field: Field, rows: Sequence[Sequence[Any]], ncols: int) -> int:
     return int(field.matrix(rows, ncols).rank()) if rows else 0
 
 
-def sparse_rank(field: Field, rows: Sequence[dict[int, Any]], ncols: int) -> int:
-    """Rank of a matrix given by its nonzero entries, row by row.
+class RankCounter:
+    """The rank of a growing list of sparse rows.
 
-    Over F_2 rows are kept as the bits of an integer: for the matrices with
-    thousands of columns that extensions of F_2 lead to, fifty times faster.
+    Over F_2 rows are kept as the bits of integers and reduced once: for the
+    matrices with thousands of columns that extensions of F_2 lead to, far
+    faster than a matrix. Over other fields the matrix is reduced each time.
     """
-    if field.order == 2:
-        return _bit_rank([sum(1 << j for j, x in row.items() if x) for row in rows])
-    if not rows:
-        return 0
-    matrix = field.zero_matrix(len(rows), ncols)
-    for i, row in enumerate(rows):
+
+    def __init__(self, field: Field, ncols: int) -> None:
+        self._field = field
+        self._ncols = ncols
+        self._rows: list[dict[int, Any]] = []
+        self._by_leading_bit: dict[int, int] = {}
+
+    def add(self, rows: Sequence[dict[int, Any]]) -> int:
+        """The rank after these rows, given by their nonzero entries, have been added."""
+        if self._field.order == 2:
+            for row in rows:
+                self._add_bits(row)
+            return len(self._by_leading_bit)
+        self._rows.extend(rows)
+        matrix = self._field.zero_matrix(len(self._rows), self._ncols)
+        for i, row in enumerate(self._rows):
+            for j, value in row.items():
+                matrix[i, j] = value
+        return int(matrix.rank())
+
+    def _add_bits(self, row: dict[int, Any]) -> None:
+        digits = bytearray(b"0") * self._ncols
         for j, value in row.items():
-            matrix[i, j] = value
-    return int(matrix.rank())
-
-
-def _bit_rank(rows: list[int]) -> int:
-    by_leading_bit: dict[int, int] = {}
-    for row in rows:
-        while row:
-            leading = row.bit_length()
-            pivot = by_leading_bit.get(leading)
+            if value:
+                digits[j] = 49
+        bits = int(digits or b"0", 2)
+        while bits:
+            pivot = self._by_leading_bit.get(bits.bit_length())
             if pivot is None:
-                by_leading_bit[leading] = row
-                break
-            row ^= pivot
-    return len(by_leading_bit)
+                self._by_leading_bit[bits.bit_length()] = bits
+                return
+            bits ^= pivot
 
 
 def kernel(field: Field, rows: Sequence[Sequence[Any]], ncols: int) -> Rows:

@@ -117,7 +117,7 @@ class PrimeField:
 
     def generic_blocks(self, rng: Random, attempt: int = 0) -> tuple[int, Callable[[], Any]]:
         degree = 1
-        while self.order**degree < min(ENOUGH_ELEMENTS, 4 << attempt):
+        while self.order**degree < min(ENOUGH_ELEMENTS, 4 << 2 * attempt):
             degree += 1
         modulus = fq_default_ctx(self.order, degree).modulus().coeffs() if degree > 1 else [0, 1]
         return companion_blocks(self, [self.element(int(c)) for c in modulus], rng)

@@ -3,15 +3,16 @@
 from random import Random
 from typing import Any
 
-from trivector.fields.linear import sparse_rank
+from trivector.fields.linear import RankCounter
 from trivector.sections.graded import QuadricAlgebra
 from trivector.sections.hilbert import HilbertPolynomial
 
 __all__ = ["hilbert_polynomial_from"]
 
-# Over fewer scalars than this, special forms are common enough to try again.
+# Over fewer scalars than this, special forms are common enough to try again,
+# each time over more scalars.
 _LARGE = 1000
-_ATTEMPTS = 5
+_ATTEMPTS = 3
 
 
 def hilbert_polynomial_from(
@@ -75,15 +76,16 @@ class _StackedForms:
 
     def __init__(self, algebra: QuadricAlgebra, degree: int, extension: int) -> None:
         self._products = algebra.products[degree]
-        self._field = algebra.field
+        self._zero = algebra.field.zero
         self._source = algebra.hilbert[degree]
         self._target = algebra.hilbert[degree + 1]
         self._extension = extension
-        self._rows: list[dict[int, Any]] = []
+        self._counter = RankCounter(algebra.field, self._target * extension)
 
     def cokernel_dimension(self, form: list[Any]) -> int:
         """dim of R_{d+1}/(h_1, …, h_i)·R_d after one more form has been added."""
-        r = self._extension
+        r, zero = self._extension, self._zero
+        rows: list[dict[int, Any]] = []
         for s in range(self._source):
             combined: list[dict[int, Any]] = [{} for _ in range(r)]
             for products, block in zip(self._products, form, strict=True):
@@ -94,6 +96,6 @@ class _StackedForms:
                             scalar = block[a, b]
                             if scalar:
                                 key = t * r + b
-                                row[key] = row.get(key, self._field.zero) + value * scalar
-            self._rows.extend(combined)
-        return self._target - sparse_rank(self._field, self._rows, self._target * r) // r
+                                row[key] = row.get(key, zero) + value * scalar
+            rows.extend(combined)
+        return self._target - self._counter.add(rows) // r
