@@ -54,7 +54,21 @@ class ScalarMatrix:
                 result._rows[j][i] = value
         return result
 
-    def __mul__(self, other: "ScalarMatrix") -> "ScalarMatrix":
+    def __add__(self, other: "ScalarMatrix") -> "ScalarMatrix":
+        result = self._empty(*self._shape)
+        for i, (row, added) in enumerate(zip(self._rows, other._rows, strict=True)):
+            total = dict(row)
+            for j, value in added.items():
+                total[j] = total[j] + value if j in total else value
+            result._rows[i] = {j: value for j, value in total.items() if value}
+        return result
+
+    def __mul__(self, other: Any) -> "ScalarMatrix":
+        if not isinstance(other, ScalarMatrix):
+            scaled = self._empty(*self._shape)
+            if other:
+                scaled._rows = [{j: x * other for j, x in row.items()} for row in self._rows]
+            return scaled
         result = self._empty(self.nrows(), other.ncols())
         for i, row in enumerate(self._rows):
             total: dict[int, Any] = {}
@@ -156,8 +170,13 @@ class TableMatrix:
     def transpose(self) -> "TableMatrix":
         return TableMatrix(self._tables, self._codes.T.copy())
 
-    def __mul__(self, other: "TableMatrix") -> "TableMatrix":
+    def __add__(self, other: "TableMatrix") -> "TableMatrix":
+        return TableMatrix(self._tables, self._tables.add[self._codes, other._codes])
+
+    def __mul__(self, other: Any) -> "TableMatrix":
         tables = self._tables
+        if not isinstance(other, TableMatrix):
+            return TableMatrix(tables, tables.multiply[tables.code(other), self._codes])
         result = TableMatrix.zeros(tables, self.nrows(), other.ncols())
         total = result._codes
         for k in range(self.ncols()):

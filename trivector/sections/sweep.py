@@ -42,8 +42,8 @@ LARGEST_ORDER = 1024
 MAX_POINTS = 2 * 10**8
 """How many points a sweep examines unless it is told to go further."""
 
-PYTHON_POINTS = 5000
-"""Up to so many points no compiled code is loaded."""
+PYTHON_POINTS = 6000
+"""Up to so many points no compiled code is loaded: enough for every L over F_4, n = 6."""
 
 SweepProgress = Callable[[int, int], None]
 """Called with the number of points of P(U) that are done, and of all."""
@@ -53,7 +53,6 @@ Vector = Sequence[Any]
 # Between two chunks Ctrl-C is heard: a tenth of a second for either of them.
 _CHUNK, _PYTHON_CHUNK = 1 << 16, 1 << 9
 _SECONDS_BETWEEN_REPORTS = 0.2
-_SECONDS_PER_POINT = 0.5e-6
 
 
 def sweep_points(n: int, q: int) -> int:
@@ -179,7 +178,9 @@ def _points_to_examine(n: int, q: int, dimension: int) -> int:
     return points
 
 
-def _duration(seconds: float) -> str:
+def _duration(n: int, points: int, dimension: int) -> str:
+    """An estimate in words: {b : v∧b ∈ L} is mostly zero, or never."""
+    seconds = points * (0.3e-6 if dimension <= comb(n - 1, 3) else 2e-6)
     for size, unit in ((86400, "days"), (3600, "hours"), (60, "minutes")):
         if seconds >= 2 * size:
             return f"{seconds / size:,.0f} {unit}"
@@ -204,13 +205,13 @@ class _Cell:
         self.size = len(self.elements) ** len(self.behind)
         index = index_of(n, p + 1)
         # Entries that do not move with the last coordinate come first.
-        entries = [I for I in combinations(axes, p + 1) if pivot in I]
-        entries.sort(key=lambda I: axes[-1] in I)
-        self.fixed = sum(axes[-1] not in I for I in entries)
+        entries = [J for J in combinations(axes, p + 1) if pivot in J]
+        entries.sort(key=lambda J: axes[-1] in J)
+        self.fixed = sum(axes[-1] not in J for J in entries)
         self.maps: list[list[list[Any]]] = []
         for k in (pivot, *self.behind):
             products = [wedge(self._unit(k), 1, row, p, n, zero) for row in rows]
-            self.maps.append([[product[index[I]] for product in products] for I in entries])
+            self.maps.append([[product[index[J]] for product in products] for J in entries])
         # If a = v∧b, and b is without the pivot, then this is b.
         self.contracted = [contract(self._unit(pivot), row, p, n, zero) for row in rows]
 
@@ -251,25 +252,12 @@ class _Cell:
 
     def compiled(self, tables: Any, pfaffians: Any) -> Callable[[int, int], list[int]]:
         """From a range of lines (q points each) to the points that the kernel flags."""
-        import numpy as np
+        from trivector.sections.sweep_kernel import prepare
 
-        from trivector.sections.sweep_kernel import flagged_points
-
-        q, code = len(self.elements), self.field.sort_key
-        maps = np.array([[[code(x) for x in row] for row in m] for m in self.maps], np.uint16)
-        bivectors = np.array([[code(x) for x in row] for row in self.contracted], np.uint16)
-        terms = np.array(pfaffians, np.int64).reshape(-1, 6)
-
-        def run(first: int, last: int) -> list[int]:
-            out = np.empty((last - first) * q, np.int64)
-            count = flagged_points(
-                maps[0], maps[1:], self.fixed, bivectors, terms, first, last, tables, out
-            )
-            found: list[int] = out[:count].tolist()
-            return found
-
-        run(0, 0)  # compiles now, before several threads want it at once
-        return run
+        code = self.field.sort_key
+        maps = [[[code(x) for x in row] for row in matrix] for matrix in self.maps]
+        bivectors = [[code(x) for x in row] for row in self.contracted]
+        return prepare(maps, self.fixed, bivectors, pfaffians, tables)
 
 
 class _Sweep:
@@ -289,12 +277,13 @@ class _Sweep:
                 f"the sweep goes by tables for fields with at most {LARGEST_ORDER} elements, "
                 f"not {self.field.name}; a finite section can be solved without a sweep"
             )
-        points = _points_to_examine(self.n, self.q, subspace.dimension)
+        points = _points_to_examine(self.n, self.q, len(self.rows))
         if points > max_points and self.rows:
             raise UsageError(
                 f"the sweep over {self.field.name} would examine {points:,} points, more than "
-                f"{max_points:,}: about {_duration(points * _SECONDS_PER_POINT)} on one processor; "
-                "raise max_points or use a smaller field"
+                f"{max_points:,}; on one processor that takes about "
+                f"{_duration(self.n, points, len(self.rows))}. "
+                "Raise max_points or use a smaller field"
             )
         self.elements = [self.field.from_code(code) for code in range(self.q)]
         self.left_to_python = PYTHON_POINTS
@@ -302,12 +291,13 @@ class _Sweep:
     def planes(self) -> Iterator[Plane]:
         for i, v, bivectors in self._last_rows():
             if len(bivectors) <= self.n - 2:
-                pairs = self._upper_rows(i, bivectors)
+                pairs = self._upper_rows(i, bivectors, self._quadrics(i, bivectors))
             else:
                 pairs = (
-                    (u, w)
+                    (_combine(x, vectors, self.field.zero), w)
                     for w, vectors, count in self._middle_rows(i, bivectors)
-                    for u in self._leading_combinations(vectors, count)
+                    for x in self._common_zeros((), len(vectors))
+                    if any(x[:count])
                 )
             for u, w in pairs:
                 yield Plane(self.field, self.n, (tuple(u), tuple(w), tuple(v)))
@@ -319,8 +309,8 @@ class _Sweep:
             if size > self.n - 2:
                 for _, vectors, count in self._middle_rows(i, bivectors):
                     total += self._difference(len(vectors), len(vectors) - count)
-            elif self._quadrics(i, bivectors):
-                total += sum(1 for _ in self._upper_rows(i, bivectors))
+            elif quadrics := self._quadrics(i, bivectors):
+                total += sum(1 for _ in self._upper_rows(i, bivectors, quadrics))
             else:  # all of them have rank 2, and those that do not count are a linear space
                 first = [[b[k] for k in _pairs_before(self.n, i)] for b in bivectors]
                 total += self._difference(size, size - rank(self.field, first, len(first[0])))
@@ -339,7 +329,7 @@ class _Sweep:
         due = monotonic() + _SECONDS_BETWEEN_REPORTS
         for i in range(2, self.n):
             cell = _Cell(self, (), i, self.rows)
-            for last, found in self._look(cell, _pfaffian_terms(self.n, i), self.jobs):
+            for last, found in self._screen(cell, _pfaffian_terms(self.n, i), self.jobs):
                 for index in found:
                     v = cell.point(index)
                     bivectors = cell.solutions(v)
@@ -361,7 +351,7 @@ class _Sweep:
         """
         for j in range(1, i):
             cell = _Cell(self, (i,), j, bivectors)
-            for _, found in self._look(cell, (), 1):
+            for _, found in self._screen(cell, (), 1):
                 for index in found:
                     w = cell.point(index)
                     vectors = row_space(self.field, cell.solutions(w), self.n)
@@ -369,7 +359,9 @@ class _Sweep:
                     if count:
                         yield w, vectors, count
 
-    def _look(self, cell: _Cell, pfaffians: Any, jobs: int) -> Iterator[tuple[int, Sequence[int]]]:
+    def _screen(
+        self, cell: _Cell, pfaffians: Any, jobs: int
+    ) -> Iterator[tuple[int, Sequence[int]]]:
         """Chunk after chunk: where it ends, and the points in it that deserve a closer look."""
         if cell.size == 1:
             yield 1, (0,)
@@ -409,11 +401,13 @@ class _Sweep:
 
     # The planes over one point v
 
-    def _upper_rows(self, i: int, bivectors: list[list[Any]]) -> Iterator[tuple[Vector, Vector]]:
+    def _upper_rows(
+        self, i: int, bivectors: list[list[Any]], quadrics: Rows
+    ) -> Iterator[tuple[Vector, Vector]]:
         """The rows u, w with pivots before i whose product is a combination of the bivectors."""
         field, n = self.field, self.n
         pairs = subsets(n, 2)
-        for x in self._common_zeros(self._quadrics(i, bivectors), len(bivectors)):
+        for x in self._common_zeros(quadrics, len(bivectors)):
             b = _combine(x, bivectors, field.zero)
             # The first nonzero entry of u∧w stands at the two pivots.
             position = next((k for k in _pairs_before(n, i) if b[k]), None)
@@ -495,19 +489,6 @@ class _Sweep:
             squares[s * s].append(s)
             shifted[s * s + s].append(s)
         return squares, shifted
-
-    def _leading_combinations(self, rows: Rows, count: int) -> Iterator[Vector]:
-        """Those with a first coefficient 1, at one of the first ``count`` rows."""
-        for k in range(count):
-            yield from self._translates(rows[k], rows[k + 1 :])
-
-    def _translates(self, vector: Vector, rows: Rows) -> Iterator[Vector]:
-        if not rows:
-            yield vector
-            return
-        for x in self.elements:
-            moved = [a + x * b for a, b in zip(vector, rows[0], strict=True)] if x else vector
-            yield from self._translates(moved, rows[1:])
 
 
 @cache

@@ -6,14 +6,14 @@ Importing this module loads numba, so `trivector.sections.sweep` does it late.
 The kernel releases the interpreter's lock; threads share its arguments.
 """
 
-from collections.abc import Callable
+from collections.abc import Callable, Sequence
 from typing import Any, NamedTuple, TypeVar, cast
 
-import numba  # type: ignore[import-untyped]  # numba ships no types
+import numba
 import numpy as np
 import numpy.typing as npt
 
-__all__ = ["Tables", "flagged_points", "make_tables"]
+__all__ = ["Tables", "flagged_points", "make_tables", "prepare"]
 
 Codes = npt.NDArray[np.uint16]
 Indices = npt.NDArray[np.int64]
@@ -348,3 +348,29 @@ def flagged_points(
             out[count] = line * q + t
             count += 1
     return count
+
+
+def prepare(
+    maps: Sequence[Sequence[Sequence[int]]],
+    fixed: int,
+    bivectors: Sequence[Sequence[int]],
+    pfaffians: Sequence[Sequence[int]],
+    tables: Tables,
+) -> Callable[[int, int], list[int]]:
+    """`flagged_points` as a function of the range of lines, compiled and ready for threads.
+
+    ``maps`` holds the base and after it the slopes; see there for the rest.
+    """
+    base, *slopes = (np.array(matrix, np.uint16) for matrix in maps)
+    stacked, columns = np.stack(slopes), np.array(bivectors, np.uint16)
+    terms = np.array(pfaffians, np.int64).reshape(-1, 6)
+    q = len(tables.neg)
+
+    def flagged(first: int, last: int) -> list[int]:
+        out = np.empty((last - first) * q, np.int64)
+        count = flagged_points(base, stacked, fixed, columns, terms, first, last, tables, out)
+        found: list[int] = out[:count].tolist()
+        return found
+
+    flagged(0, 0)  # compiles now, before several threads want it at once
+    return flagged
