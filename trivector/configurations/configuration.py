@@ -148,6 +148,6 @@ class Configuration:
             span=span,
             offending_pair=span.offending_pair() if self.n == 6 else None,
             section=report,
-            missing=(),
+            missing=report.others,
             seed=seed,
         )

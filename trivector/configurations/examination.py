@@ -53,7 +53,8 @@ class Examination:
         ``known`` planes are the given ones that lie in it.
     missing : tuple of Plane
         Planes over the field of the data that meet all given ones and are
-        not among them, as far as they were found.
+        not among them: all such planes exactly when ``section.planes`` is
+        given, else as far as they were found.
     seed : int
         The seed of the random linear forms in the proofs.
 
@@ -109,7 +110,7 @@ class Examination:
         """Whether no plane over the field of the data can be added; None as above."""
         if not self.pairwise_incident:
             return None
-        return False if self.missing else self.section.complete_over_base
+        return self.section.complete_over_base
 
     @property
     def exit_code(self) -> int:
@@ -143,6 +144,7 @@ class Examination:
                 "over_closure": self.complete_over_closure,
             },
             "missing": [plane.to_entries() for plane in self.missing],
+            "missing_exhaustive": self.section.planes is not None,
             "seed": self.seed,
         }
 

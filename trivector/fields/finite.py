@@ -26,6 +26,7 @@ from trivector.fields.entries import parse_rational, shorten
 from trivector.fields.matrices import ScalarMatrix, TableMatrix
 from trivector.fields.polynomials import format_polynomial, parse_modulus, parse_polynomial
 from trivector.fields.prime import ENOUGH_ELEMENTS, Identity, companion_blocks, prime_field
+from trivector.fields.protocol import ResidueField
 
 if TYPE_CHECKING:
     import numpy as np
@@ -344,6 +345,31 @@ class ExtensionField:
 
         polynomial = galois.Poly(list(reversed(self.modulus)), field=galois.GF(self.characteristic))
         return galois.GF(self.characteristic, self.degree, irreducible_poly=polynomial)
+
+    def residue_field(self, modulus: Sequence[Any]) -> ResidueField:
+        if len(modulus) == 2:
+            return ResidueField(self, self.element, -modulus[0])
+        absolute = fq_default_ctx(self.characteristic, self.degree * (len(modulus) - 1)).modulus()
+        field = ExtensionField(self.characteristic, tuple(int(c) for c in absolute.coeffs()))
+        image = field.root([field.element(c) for c in self.modulus])
+
+        def embed(value: FiniteElement) -> FiniteElement:
+            total = field.zero
+            for coefficient in reversed(self.coefficients(value)):
+                total = total * image + coefficient
+            return total
+
+        return ResidueField(field, embed, field.root([embed(c) for c in modulus]))
+
+    def root(self, coefficients: Sequence[Any]) -> FiniteElement:
+        """The first root, by `sort_key`, of a polynomial that has one in this field."""
+        roots = [-f[0] for f, _ in self.factor(coefficients) if len(f) == 2]
+        first: FiniteElement = min(roots, key=self.sort_key)
+        return first
+
+    @property
+    def reconstructs(self) -> bool:
+        return False
 
     def to_spec(self) -> dict[str, Any]:
         return {"characteristic": self.characteristic, "modulus": self.modulus_text}

@@ -13,6 +13,7 @@ from trivector.fields.entries import parse_rational, shorten
 from trivector.fields.matrices import ScalarMatrix
 from trivector.fields.polynomials import format_polynomial, parse_modulus, parse_polynomial
 from trivector.fields.prime import PrimeField, prime_field
+from trivector.fields.protocol import ResidueField
 
 __all__ = ["NumberElement", "NumberField", "PlaceReduction", "number_field"]
 
@@ -254,6 +255,15 @@ class NumberField:
             ]
             found.append(([value / values[-1] for value in values], int(exponent)))
         return sorted(found, key=lambda i: (len(i[0]), [self.sort_key(c) for c in i[0]]))
+
+    def residue_field(self, modulus: Sequence[Any]) -> ResidueField | None:
+        if len(modulus) == 2:
+            return ResidueField(self, self.element, -modulus[0])
+        return None
+
+    @property
+    def reconstructs(self) -> bool:
+        return False
 
     def to_spec(self) -> dict[str, str]:
         return {"modulus": self.modulus_text}

@@ -10,6 +10,7 @@ from flint import fmpq, fmpz, fq_default_ctx, nmod, nmod_mat, nmod_poly
 
 from trivector.errors import EntryError, FieldError
 from trivector.fields.entries import parse_rational, shorten
+from trivector.fields.protocol import ResidueField
 
 __all__ = ["ENOUGH_ELEMENTS", "Identity", "PrimeField", "companion_blocks", "prime_field"]
 
@@ -139,6 +140,19 @@ class PrimeField:
         add = (codes[:, None] + codes[None, :]) % self.order
         multiply = codes[:, None] * codes[None, :] % self.order
         return add.astype(np.uint16), multiply.astype(np.uint16)
+
+    def residue_field(self, modulus: Sequence[Any]) -> ResidueField:
+        if len(modulus) == 2:
+            return ResidueField(self, self.element, -modulus[0])
+        # Extension fields stand on prime fields, so they are imported when asked for.
+        from trivector.fields.finite import ExtensionField
+
+        field = ExtensionField(self.order, tuple(int(c) for c in modulus))
+        return ResidueField(field, lambda c: field.element(int(c)), field.generator)
+
+    @property
+    def reconstructs(self) -> bool:
+        return False
 
     def to_spec(self) -> str:
         return self.name

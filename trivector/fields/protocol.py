@@ -7,10 +7,11 @@ a method here.
 """
 
 from collections.abc import Callable, Iterable, Iterator, Sequence
+from dataclasses import dataclass
 from random import Random
 from typing import Any, Protocol
 
-__all__ = ["Field", "Matrix", "Reduction", "Scalar"]
+__all__ = ["Field", "FiniteField", "Matrix", "Reduction", "ResidueField", "Scalar"]
 
 
 class Scalar(Protocol):
@@ -63,6 +64,22 @@ class Reduction(Protocol):
     def rows(self, rows: Iterable[Sequence[Any]]) -> list[list[Any]]:
         """Map rows of scalars; `BadReductionError` if one is not integral."""
         ...
+
+
+@dataclass(frozen=True)
+class ResidueField:
+    """An extension K of k: the field, the map k → K, and θ ∈ K."""
+
+    field: "Field"
+    embed: Callable[[Any], Any]
+    root: Any
+
+    def value(self, coefficients: Sequence[Any]) -> Any:
+        """Σ c_i·θ^i for c_i in k."""
+        total = self.field.zero
+        for coefficient in reversed(coefficients):
+            total = total * self.root + self.embed(coefficient)
+        return total
 
 
 class Field(Protocol):
@@ -150,6 +167,28 @@ class Field(Protocol):
         """
         ...
 
+    def residue_field(self, modulus: Sequence[Any]) -> "ResidueField | None":
+        """The extension k(θ), θ a root of a monic irreducible polynomial over k.
+
+        None where the extension cannot be represented (over number fields).
+        """
+        ...
+
+    @property
+    def reconstructs(self) -> bool:
+        """Whether elements can be found from their residues modulo many primes."""
+        ...
+
     def to_spec(self) -> str | dict[str, Any]:
         """What stands under ``"field"`` in a document."""
+        ...
+
+
+class FiniteField(Field, Protocol):
+    """A finite field: its elements have codes 0 … q−1, which are their sort keys."""
+
+    def from_code(self, code: int) -> Any: ...
+
+    def operation_tables(self) -> tuple[Any, Any]:
+        """(add, multiply): q×q tables of codes, numpy arrays of uint16."""
         ...

@@ -11,6 +11,7 @@ from flint import fmpq, fmpq_mat, fmpq_poly, fmpz, fmpz_mat
 from trivector.errors import BadReductionError
 from trivector.fields.entries import parse_rational
 from trivector.fields.prime import PrimeField, prime_field
+from trivector.fields.protocol import ResidueField
 
 __all__ = ["QQ", "ModularReduction", "Rationals"]
 
@@ -120,11 +121,43 @@ class Rationals:
         found = [(_monic(list(f.coeffs())), int(e)) for f, e in factors]
         return sorted(found, key=lambda item: (len(item[0]), item[0]))
 
+    def residue_field(self, modulus: Sequence[Any]) -> ResidueField:
+        if len(modulus) == 2:
+            return ResidueField(self, self.element, -modulus[0])
+        # Number fields stand on ℚ, so they are imported when asked for.
+        from trivector.fields.number import NumberField
+
+        if len(modulus) == 3:
+            return _quadratic_field(modulus)
+        field = NumberField(tuple(modulus))
+        return ResidueField(field, field.element, field.generator)
+
+    @property
+    def reconstructs(self) -> bool:
+        return True
+
     def to_spec(self) -> str:
         return self.name
 
     def __repr__(self) -> str:
         return self.name
+
+
+def _quadratic_field(modulus: Sequence[fmpq]) -> ResidueField:
+    """ℚ(√D) with D free of small squares, and a root of the quadratic in it."""
+    from trivector.fields.number import NumberField
+
+    constant, linear = modulus[0], modulus[1]
+    discriminant = linear * linear - 4 * constant
+    # √(p/q) = √(pq)/q, and squares of small primes come out of the root.
+    radicand, outside = discriminant.p * discriminant.q, fmpq(1, discriminant.q)
+    for prime in range(2, 1000):
+        while radicand % (prime * prime) == 0:
+            radicand //= prime * prime
+            outside *= prime
+    field = NumberField((fmpq(-radicand), fmpq(0), fmpq(1)))
+    root = field.from_coefficients([-linear / 2, outside / 2])
+    return ResidueField(field, field.element, root)
 
 
 def _monic(coefficients: list[Any]) -> list[fmpq]:

@@ -36,11 +36,20 @@ class Limits:
         as wide, over number fields and very large F_q an eighth.
     max_primes : int
         How many primes are tried for data over an infinite field.
+    max_lift_primes : int
+        How many primes of 62 bits are combined to find points over ℚ.
+    max_points : int
+        The largest sweep, in points, that an examination starts by itself.
+    max_listed : int
+        After how many planes that are not known such a sweep stops.
     """
 
     max_degree: int = 12
     max_columns: int = 1200
     max_primes: int = 5
+    max_lift_primes: int = 150
+    max_points: int = 1_200_000
+    max_listed: int = 20_000
 
     def columns(self, field: Field) -> int:
         """The widest matrix over this field."""
@@ -68,6 +77,8 @@ class Study:
         The number of conditions that the points impose in degrees 0 … d − 1.
     limit : str or None
         The limit that was hit, in words.
+    algebra : QuadricAlgebra or None
+        The tables behind ``hilbert``, in coordinates of the given basis.
     """
 
     hilbert: tuple[int, ...]
@@ -76,6 +87,7 @@ class Study:
     complete_degree: int | None = None
     conditions: tuple[int, ...] = ()
     limit: str | None = None
+    algebra: QuadricAlgebra | None = None
 
 
 def expected_dimension(n: int, size: int) -> int:
@@ -144,7 +156,7 @@ def _study_directly(
         return conditions[degree]
 
     def result(**found: Any) -> Study:
-        return Study(tuple(hilbert), conditions=tuple(conditions), **found)
+        return Study(tuple(hilbert), conditions=tuple(conditions), algebra=algebra, **found)
 
     while True:
         top, here = algebra.top, hilbert[-1]

@@ -18,7 +18,7 @@ from functools import cache, cached_property
 from itertools import combinations, islice
 from math import comb
 from time import monotonic
-from typing import Any
+from typing import Any, cast
 
 from trivector.errors import UsageError
 from trivector.exterior.basis import index_of, subsets
@@ -266,27 +266,32 @@ class _Sweep:
     def __init__(
         self, subspace: Subspace, jobs: int, max_points: int, on_progress: SweepProgress | None
     ) -> None:
-        self.field: Any = subspace.field
+        # Finite fields translate elements to codes and back, beyond the protocol.
+        self.field = cast(Any, subspace.field)
         self.n, self.rows, self.jobs = subspace.n, subspace.rows, jobs
         self.report = on_progress or (lambda done, total: None)
         self.q = _order(subspace)
         if jobs < 1:
             raise UsageError(f"jobs must be at least 1, not {jobs}")
+        if self.rows:
+            self._refuse_if_too_large(max_points)
+            self.elements = [self.field.from_code(code) for code in range(self.q)]
+        self.left_to_python = PYTHON_POINTS
+
+    def _refuse_if_too_large(self, max_points: int) -> None:
+        name, dimension = self.field.name, len(self.rows)
         if self.q > LARGEST_ORDER:
             raise UsageError(
                 f"the sweep goes by tables for fields with at most {LARGEST_ORDER} elements, "
-                f"not {self.field.name}; a finite section can be solved without a sweep"
+                f"not {name}; a finite section can be solved without a sweep"
             )
-        points = _points_to_examine(self.n, self.q, len(self.rows))
-        if points > max_points and self.rows:
+        points = _points_to_examine(self.n, self.q, dimension)
+        if points > max_points:
             raise UsageError(
-                f"the sweep over {self.field.name} would examine {points:,} points, more than "
-                f"{max_points:,}; on one processor that takes about "
-                f"{_duration(self.n, points, len(self.rows))}. "
-                "Raise max_points or use a smaller field"
+                f"the sweep over {name} would examine {points:,} points, more than "
+                f"max_points = {max_points:,}; on one processor that takes about "
+                f"{_duration(self.n, points, dimension)}. Raise max_points, or use a smaller field"
             )
-        self.elements = [self.field.from_code(code) for code in range(self.q)]
-        self.left_to_python = PYTHON_POINTS
 
     def planes(self) -> Iterator[Plane]:
         for i, v, bivectors in self._last_rows():
