@@ -7,7 +7,7 @@ from collections.abc import Sequence
 from typing import NoReturn
 
 from trivector import __version__
-from trivector.cli import examine
+from trivector.cli import count, examine, planes
 from trivector.errors import TrivectorError, UsageError
 
 __all__ = ["build_parser", "main"]
@@ -34,7 +34,8 @@ def build_parser() -> argparse.ArgumentParser:
     )
     parser.add_argument("--version", action="version", version=f"trivector {__version__}")
     verbs = parser.add_subparsers(title="verbs", metavar="VERB", dest="verb", required=True)
-    examine.add_parser(verbs)
+    for verb in (examine, planes, count):
+        verb.add_parser(verbs)
     return parser
 
 

@@ -3,25 +3,38 @@
 import argparse
 import json
 import sys
-from collections.abc import Callable
+from collections.abc import Callable, Iterator
+from contextlib import contextmanager
 from typing import Any, TextIO
 
 from trivector.errors import UsageError
 
-__all__ = ["add_common", "add_limits", "limits_from", "progress", "write_answer"]
+__all__ = [
+    "add_common",
+    "add_limits",
+    "add_sweep",
+    "limits_from",
+    "open_output",
+    "positive",
+    "print_report",
+    "progress",
+    "write_answer",
+]
 
 
 def add_common(parser: argparse.ArgumentParser) -> None:
     """``--field``, ``--json``, ``--seed``, ``--jobs``, ``--quiet``, ``-o``."""
     parser.add_argument(
-        "--field", metavar="F", help="Q or F_p; needed for plain text, reduces a document over Q"
+        "--field",
+        metavar="F",
+        help="Q, F_q or a field in JSON; needed for plain text, reduces a document over Q",
     )
     parser.add_argument("--json", action="store_true", help="write JSON instead of a table")
     parser.add_argument(
         "--seed", type=int, default=0, metavar="N", help="for random choices; echoed (default 0)"
     )
     parser.add_argument(
-        "--jobs", type=_positive, default=1, metavar="N", help="processes to use where it helps"
+        "--jobs", type=positive, default=1, metavar="N", help="processes to use where it helps"
     )
     parser.add_argument("--quiet", action="store_true", help="no progress on standard error")
     parser.add_argument("-o", dest="output", metavar="FILE", help="write the answer to a file")
@@ -31,13 +44,20 @@ def add_limits(parser: argparse.ArgumentParser) -> None:
     """The limits beyond which an answer is "undecided"."""
     group = parser.add_argument_group("limits, beyond which the answer is “undecided”")
     group.add_argument(
-        "--max-degree", type=_positive, default=12, metavar="N", help="of the Hilbert function"
+        "--max-degree", type=positive, default=12, metavar="N", help="of the Hilbert function"
     )
     group.add_argument(
-        "--max-columns", type=_positive, default=1200, metavar="N", help="of a matrix"
+        "--max-columns", type=positive, default=1200, metavar="N", help="of a matrix"
     )
     group.add_argument(
-        "--max-primes", type=_positive, default=5, metavar="N", help="tried for data over Q"
+        "--max-primes", type=positive, default=5, metavar="N", help="tried for data over Q"
+    )
+    group.add_argument(
+        "--max-lift-primes",
+        type=positive,
+        default=150,
+        metavar="N",
+        help="combined to find points over Q",
     )
 
 
@@ -45,7 +65,12 @@ def limits_from(arguments: argparse.Namespace) -> Any:
     """The limits as the engine takes them."""
     from trivector.sections import Limits
 
-    return Limits(arguments.max_degree, arguments.max_columns, arguments.max_primes)
+    return Limits(
+        arguments.max_degree,
+        arguments.max_columns,
+        arguments.max_primes,
+        arguments.max_lift_primes,
+    )
 
 
 def progress(arguments: argparse.Namespace) -> Callable[[str], None]:
@@ -59,38 +84,62 @@ def write_answer(
     arguments: argparse.Namespace, data: dict[str, Any], report: Callable[[], Any]
 ) -> None:
     """JSON with --json, otherwise the report; to -o FILE or standard output."""
+    with open_output(arguments) as file:
+        if arguments.json:
+            json.dump(data, file, ensure_ascii=False)
+            file.write("\n")
+        else:
+            print_report(report(), file)
+
+
+@contextmanager
+def open_output(arguments: argparse.Namespace) -> Iterator[TextIO]:
+    """The file of -o, or standard output."""
     if arguments.output is None:
-        _write(arguments, data, report, sys.stdout)
+        yield sys.stdout
         return
     try:
-        with open(arguments.output, "w", encoding="utf-8") as file:
-            _write(arguments, data, report, file)
+        file = open(arguments.output, "w", encoding="utf-8")  # noqa: SIM115 - closed below
     except OSError as error:
         raise UsageError(
             f"{arguments.output}: cannot be written ({error.strerror}); name another file"
         ) from None
+    with file:
+        yield file
 
 
-def _write(
-    arguments: argparse.Namespace, data: dict[str, Any], report: Callable[[], Any], file: TextIO
-) -> None:
-    if arguments.json:
-        json.dump(data, file, ensure_ascii=False)
-        file.write("\n")
-        return
+def print_report(report: Any, file: TextIO) -> None:
+    """A report of the room `reports`, on a terminal or as plain lines."""
     from rich.console import Console
 
     if file.isatty():
-        Console(file=file, highlight=False).print(report())
+        Console(file=file, highlight=False).print(report)
         return
     # Without a terminal there is no width to respect and nothing to pad for.
     console = Console(file=file, highlight=False, width=1000, color_system=None)
     with console.capture() as capture:
-        console.print(report())
+        console.print(report)
     file.writelines(f"{line.rstrip()}\n" for line in capture.get().splitlines())
 
 
-def _positive(text: str) -> int:
+def add_sweep(parser: argparse.ArgumentParser) -> None:
+    """How far a sweep over a finite field may go."""
+    parser.add_argument(
+        "--max-points",
+        type=positive,
+        default=2 * 10**8,
+        metavar="N",
+        help="points that a sweep over F_q may examine (default 2·10^8)",
+    )
+
+
+def positive(text: str) -> int:
+    """An option's value that must be 1, 2, 3, ….
+
+    Raises
+    ------
+    argparse.ArgumentTypeError
+    """
     value = int(text) if text.isascii() and text.isdigit() else 0
     if value < 1:
         raise argparse.ArgumentTypeError(f"must be a positive integer, not {text!r}")

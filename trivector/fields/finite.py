@@ -361,6 +361,10 @@ class ExtensionField:
 
         return ResidueField(field, embed, field.root([embed(c) for c in modulus]))
 
+    def extension(self, degree: int) -> ResidueField:
+        """The extension of this degree, by an irreducible polynomial that is always the same."""
+        return self.residue_field(self._irreducible(degree, Random(0)))
+
     def root(self, coefficients: Sequence[Any]) -> FiniteElement:
         """The first root, by `sort_key`, of a polynomial that has one in this field."""
         roots = [-f[0] for f, _ in self.factor(coefficients) if len(f) == 2]

@@ -150,6 +150,13 @@ class PrimeField:
         field = ExtensionField(self.order, tuple(int(c) for c in modulus))
         return ResidueField(field, lambda c: field.element(int(c)), field.generator)
 
+    def extension(self, degree: int) -> ResidueField:
+        """The extension of this degree, by the polynomial of python-flint's table."""
+        if degree == 1:
+            return ResidueField(self, self.element, self.zero)
+        modulus = fq_default_ctx(self.order, degree).modulus().coeffs()
+        return self.residue_field([self.element(int(c)) for c in modulus])
+
     @property
     def reconstructs(self) -> bool:
         return False

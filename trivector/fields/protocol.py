@@ -189,6 +189,10 @@ class FiniteField(Field, Protocol):
 
     def from_code(self, code: int) -> Any: ...
 
+    def extension(self, degree: int) -> ResidueField:
+        """An extension of this degree; of a prime field by a Conway polynomial, up to 2^16."""
+        ...
+
     def operation_tables(self) -> tuple[Any, Any]:
         """(add, multiply): q×q tables of codes, numpy arrays of uint16."""
         ...

@@ -55,7 +55,8 @@ class Decision:
         base = found.get("planes")
         others = found.get("others", ())
         if base is not None and "others" not in found:
-            others = tuple(plane for plane in base if plane not in set(self.planes))
+            known = set(self.planes)
+            others = tuple(plane for plane in base if plane not in known)
         if found.get("complete_over_closure") or base is not None:
             found["complete_over_base"] = not others
         elif others:
@@ -168,7 +169,7 @@ class Decision:
                 further=length - sum(lengths),
                 complete_over_closure=False,
                 method=f"{bound}; closed points found and checked over {field.name} account for "
-                f"all of it, the {_planes(len(lengths))} given for {sum(lengths)}",
+                f"all of it{_given(lengths)}",
             )
         return self._finite_by_rank(found, polynomial, reduction, lengths)
 
@@ -196,7 +197,7 @@ class Decision:
         reduction: Reduction,
         lengths: Sequence[int],
     ) -> SectionReport:
-        length, known = polynomial.degree, sum(lengths)
+        length = polynomial.degree
         common: dict[str, Any] = {
             "projective_dimension": 0,
             "infinite": False,
@@ -213,10 +214,10 @@ class Decision:
             hilbert_function=exact,
             hilbert_polynomial=polynomial,
             reduced=False if any(value > 1 for value in lengths) else None,
-            further=length - known,
+            further=length - sum(lengths),
             complete_over_closure=False,
             method=self._exactly(found, polynomial, reduction, f"finite of length {length}")
-            + f"; the {_planes(len(lengths))} given account for {known} of it",
+            + _given(lengths),
         )
 
     def _infinite(
@@ -352,6 +353,12 @@ def _listed(hilbert: Sequence[int], polynomial: HilbertPolynomial) -> tuple[int,
     while last > 1 and values[last - 1] == values[last] == polynomial.degree:
         last -= 1
     return tuple(values[: max(last + 2, 4)])
+
+
+def _given(lengths: Sequence[int]) -> str:
+    if not lengths:
+        return ""
+    return f", the {_planes(len(lengths))} given for {sum(lengths)} of it"
 
 
 def _planes(count: int) -> str:

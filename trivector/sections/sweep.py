@@ -32,6 +32,7 @@ __all__ = [
     "PYTHON_POINTS",
     "SweepProgress",
     "count_rational_planes",
+    "is_sweepable",
     "iter_rational_planes",
     "sweep_points",
 ]
@@ -151,6 +152,18 @@ def count_rational_planes(
     return _Sweep(subspace, jobs, max_points, on_progress).count()
 
 
+def is_sweepable(subspace: Subspace, max_points: int = MAX_POINTS) -> bool:
+    """Whether `iter_rational_planes` would answer and not refuse.
+
+    >>> from trivector import QQ, Subspace, prime_field
+    >>> [is_sweepable(Subspace.span(k, 6, [[1] * 20])) for k in (QQ, prime_field(101))]
+    [False, True]
+    """
+    if subspace.field.order is None or subspace.dimension == subspace.ambient_dimension:
+        return False
+    return _obstacle(subspace, max_points) is None
+
+
 def _order(subspace: Subspace) -> int:
     if subspace.field.order is None:
         raise UsageError(
@@ -158,6 +171,26 @@ def _order(subspace: Subspace) -> int:
             "reduce the subspace modulo a prime"
         )
     return subspace.field.order
+
+
+def _obstacle(subspace: Subspace, max_points: int) -> str | None:
+    """Why a sweep over a finite field would be too large."""
+    n, q, name = subspace.n, _order(subspace), subspace.field.name
+    if subspace.dimension == 0:
+        return None
+    if q > LARGEST_ORDER:
+        return (
+            f"the sweep goes by tables for fields with at most {LARGEST_ORDER} elements, "
+            f"not {name}; a finite section can be solved without a sweep"
+        )
+    points = _points_to_examine(n, q, subspace.dimension)
+    if points <= max_points:
+        return None
+    return (
+        f"the sweep over {name} would examine {points:,} points, more than "
+        f"max_points = {max_points:,}; on one processor that takes about "
+        f"{_duration(n, points, subspace.dimension)}. Raise max_points, or use a smaller field"
+    )
 
 
 def _projective_count(dimension: int, q: int) -> int:
@@ -273,25 +306,12 @@ class _Sweep:
         self.q = _order(subspace)
         if jobs < 1:
             raise UsageError(f"jobs must be at least 1, not {jobs}")
+        obstacle = _obstacle(subspace, max_points)
+        if obstacle is not None:
+            raise UsageError(obstacle)
         if self.rows:
-            self._refuse_if_too_large(max_points)
             self.elements = [self.field.from_code(code) for code in range(self.q)]
         self.left_to_python = PYTHON_POINTS
-
-    def _refuse_if_too_large(self, max_points: int) -> None:
-        name, dimension = self.field.name, len(self.rows)
-        if self.q > LARGEST_ORDER:
-            raise UsageError(
-                f"the sweep goes by tables for fields with at most {LARGEST_ORDER} elements, "
-                f"not {name}; a finite section can be solved without a sweep"
-            )
-        points = _points_to_examine(self.n, self.q, dimension)
-        if points > max_points:
-            raise UsageError(
-                f"the sweep over {name} would examine {points:,} points, more than "
-                f"max_points = {max_points:,}; on one processor that takes about "
-                f"{_duration(self.n, points, dimension)}. Raise max_points, or use a smaller field"
-            )
 
     def planes(self) -> Iterator[Plane]:
         for i, v, bivectors in self._last_rows():

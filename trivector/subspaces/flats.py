@@ -40,6 +40,14 @@ class Flat:
         rows = _checked_rows(field, n, vectors)
         return Flat(field, n, row_space(field, rows, n))
 
+    @cached_property
+    def _hash(self) -> int:
+        return hash((self.n, self.rows))
+
+    def __hash__(self) -> int:
+        # Kept: rational numbers are slow to hash, and planes are often looked up.
+        return self._hash
+
     @property
     def projective_dimension(self) -> int:
         """−1 for the empty flat, 0 for a point, 1 for a line, …"""
