@@ -1,6 +1,7 @@
 """From a document to the object it describes, or to all of its faults at once."""
 
 from collections.abc import Callable, Sequence
+from dataclasses import replace
 from functools import partial
 from math import comb
 from pathlib import Path
@@ -12,8 +13,9 @@ from trivector.documents.syntax import TextBlock, is_json, parse_json, parse_tex
 from trivector.errors import DocumentError, TrivectorError
 from trivector.exterior import Trivector
 from trivector.exterior.basis import DIMENSIONS, dimension_from_size
-from trivector.fields import Field, field_from_spec
+from trivector.fields import QQ, Field, field_from_spec
 from trivector.fields.entries import shorten
+from trivector.fields.linear import Rows
 from trivector.subspaces import Plane, Subspace
 
 __all__ = ["Document", "read"]
@@ -34,9 +36,11 @@ def read(path: str | Path, *, field: Field | str | None = None) -> Document:
     path : str or Path
         ``-`` for standard input; ``.gz`` is read transparently.
     field : Field or str, optional
-        Required for plain text. For a JSON document over ℚ the entries are
-        read in this field instead (reduction modulo p); any other field than
-        the document's own is refused.
+        An object, a name such as ``"F_7"``, or the JSON of a field with a
+        modulus. Required for plain text. A JSON document over ℚ is reduced
+        modulo p, each plane and subspace by its lattice of integer points,
+        so that dimensions stay; or extended to a number field. Any other
+        field than the document's own is refused.
 
     Returns
     -------
@@ -56,7 +60,7 @@ def read(path: str | Path, *, field: Field | str | None = None) -> Document:
     (20, 'Q')
     """
     name = "standard input" if str(path) == "-" else str(path)
-    wanted = field_from_spec(field) if isinstance(field, str) else field
+    wanted = _wanted_field(field)
     text = read_text(path)
     if not text.strip():
         raise DocumentError([f"{name}: empty; give a JSON document or rows of numbers"])
@@ -67,7 +71,31 @@ def read(path: str | Path, *, field: Field | str | None = None) -> Document:
         document = _from_text(parse_text(text), wanted, faults)
     if document is None or faults.found:
         raise DocumentError(faults.sentences())
-    return document
+    return document if wanted is None else _in_field(document, wanted)
+
+
+def _wanted_field(field: Field | str | None) -> Field | None:
+    if not isinstance(field, str):
+        return field
+    return field_from_spec(parse_json(field, "field") if field.startswith("{") else field)
+
+
+def _in_field(document: Document, field: Field) -> Document:
+    """The document itself, or what it becomes over another field than ℚ."""
+    if isinstance(document, Configuration):
+        if document.field == field:
+            return document
+        planes = tuple(Plane.from_rows(field, _lattice(plane.rows)) for plane in document.planes)
+        return replace(document, planes=planes)
+    if isinstance(document, Subspace):
+        if document.field == field:
+            return document
+        return Subspace.span(field, document.n, _lattice(document.rows))
+    return tuple(Trivector(field, trivector.coordinates) for trivector in document)
+
+
+def _lattice(rows: Rows) -> list[list[Any]]:
+    return QQ.integral_basis(rows)
 
 
 class _Faults:
@@ -144,10 +172,8 @@ def _field(data: dict[str, Any], wanted: Field | None, faults: _Faults) -> Field
             faults.add("", 'no "field"; write for example "field": "Q", or give --field')
         return wanted
     stated: Field | None = faults.attempt("field", lambda: field_from_spec(data["field"]))
-    if stated is None or wanted is None or stated == wanted:
+    if stated is None or wanted is None or stated in (wanted, QQ):
         return stated
-    if stated.order is None and stated.name == "Q":
-        return wanted
     faults.add("field", f"the document is over {stated.name}; it cannot be read over {wanted.name}")
     return None
 
@@ -222,7 +248,11 @@ def _from_text(
     blocks: list[TextBlock], wanted: Field | None, faults: _Faults
 ) -> Configuration | None:
     if wanted is None:
-        faults.add("", "neither JSON nor, without --field, rows of numbers; give --field Q, say")
+        faults.add(
+            "",
+            "not JSON (it does not start with a brace); rows of numbers need --field, "
+            "for example --field Q",
+        )
         return None
     n = _text_dimension(blocks)
     if n is None:
@@ -241,13 +271,13 @@ def _from_text(
         if widths == {comb(n, 3)}:
             for number, entries in block.lines:
                 planes.append(_plane(list(entries), f"line {number}", wanted, n, faults))
-        elif len(block.lines) != 3:
-            faults.add(
-                f"lines {first}–{block.lines[-1][0]}",
-                f"a plane is 3 rows, not {len(block.lines)}; separate planes by blank lines",
-            )
         else:
             before = len(faults.found)
+            if len(block.lines) != 3:
+                faults.add(
+                    f"lines {first}–{block.lines[-1][0]}",
+                    f"a plane is 3 rows, not {len(block.lines)}; separate planes by blank lines",
+                )
             rows = [_vector(list(e), f"line {k}", wanted, n, faults) for k, e in block.lines]
             if len(faults.found) == before:
                 planes.append(_plane(rows, f"plane at line {first}", wanted, n, faults))
