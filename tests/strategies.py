@@ -13,7 +13,7 @@ from hypothesis import HealthCheck, settings
 from hypothesis import strategies as st
 
 from trivector.exterior import Trivector
-from trivector.fields import QQ, Field, prime_field
+from trivector.fields import QQ, Field, field_from_spec, prime_field
 from trivector.fields.linear import row_space
 from trivector.subspaces import Flat, Plane, Subspace
 
@@ -25,10 +25,12 @@ FIELDS: list[Field] = [
     prime_field(7),
     prime_field(101),
     prime_field(2305843009213693951),  # 2^61 − 1
+    field_from_spec("F_4"),
+    field_from_spec("F_9"),
+    field_from_spec({"modulus": "x^2+1"}),
 ]
 
 PRIME_FIELDS = [field for field in FIELDS if field.order == field.characteristic]
-SMALL_PRIME_FIELDS = [field for field in PRIME_FIELDS if field.characteristic < 10]
 ODD_FIELDS = [field for field in FIELDS if field.characteristic != 2]
 
 over_fields = pytest.mark.parametrize("field", FIELDS, ids=lambda field: field.name)

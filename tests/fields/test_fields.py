@@ -20,6 +20,7 @@ from sympy.polys.matrices import DomainMatrix
 from trivector.errors import BadReductionError, EntryError, FieldError, TrivectorError
 from trivector.fields import QQ, Field, field_from_spec, prime_field
 from trivector.fields.linear import (
+    RankCounter,
     dependencies,
     echelon,
     kernel,
@@ -29,7 +30,6 @@ from trivector.fields.linear import (
     reduce_vector,
     row_space,
     solve,
-    sparse_rank,
 )
 
 F2, F3, F7 = prime_field(2), prime_field(3), prime_field(7)
@@ -222,7 +222,6 @@ def test_a_long_entry_is_shortened_in_the_message() -> None:
     assert len(str(caught.value)) < 150
 
 
-@pytest.mark.xfail(raises=ValueError, strict=True, reason="'+3' passes the pattern, then fails")
 @pytest.mark.parametrize("field", [QQ, F7], ids=str)
 def test_a_plus_sign_is_read_or_refused_in_a_sentence(field: Field) -> None:
     try:
@@ -344,7 +343,6 @@ def test_prime_field_takes_primes_only(p: int) -> None:  # 561 is a Carmichael n
         prime_field(p)
 
 
-@pytest.mark.xfail(raises=ValueError, strict=True, reason="the message prints all the digits")
 def test_an_enormous_order_is_refused_in_a_sentence() -> None:
     try:
         prime_field(10**5000)
@@ -466,11 +464,18 @@ def test_rank_and_determinant_agree_with_naive_elimination(
 @draws.over_fields
 @draws.some
 @given(data=st.data())
-def test_the_rank_of_a_sparse_matrix_agrees_with_sympy(field: Field, data: st.DataObject) -> None:
+def test_the_rank_of_a_growing_list_of_sparse_rows_agrees_with_sympy(
+    field: Field, data: st.DataObject
+) -> None:
     nrows, ncols = data.draw(st.integers(0, 7)), data.draw(st.integers(1, 8))
     rows = data.draw(draws.matrices_of_any_rank(field, nrows, ncols))
-    sparse = [{j: x for j, x in enumerate(row) if x or j % 3 == 0} for row in rows]
-    assert sparse_rank(field, sparse, ncols) == reference_rank(field, rows, ncols)
+    counter, end = RankCounter(field, ncols), 0
+    while end < nrows:
+        start, end = end, data.draw(st.integers(end + 1, nrows))
+        # a zero may be written or left out
+        sparse = [{j: x for j, x in enumerate(row) if x or j % 3 == 0} for row in rows[start:end]]
+        assert counter.add(sparse) == reference_rank(field, rows[:end], ncols)
+    assert counter.add([]) == reference_rank(field, rows, ncols)
 
 
 @draws.over_fields

@@ -117,7 +117,6 @@ def test_flats_over_different_fields_or_in_different_spaces_differ() -> None:
     assert len(set(flats)) == len(flats)
 
 
-@pytest.mark.xfail(strict=True, reason="equality asks for the same class, not the same subspace")
 def test_a_plane_is_equal_to_the_same_subspace_found_as_a_flat() -> None:
     plane = Plane.from_rows(QQ, unit(0, 1, 2))
     assert plane.meet(plane) == plane

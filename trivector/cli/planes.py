@@ -46,7 +46,7 @@ def run(arguments: argparse.Namespace) -> int:
     """Exit code 0: answered; 3: a limit was hit; 130: interrupted, what was found is written."""
     from dataclasses import replace
 
-    from trivector.sections import LinearSection, iter_rational_planes
+    from trivector.sections import LinearSection, iter_rational_planes, sweep_points
 
     subspace, title = read_subspace(arguments)
     tell = progress(arguments)
@@ -64,6 +64,7 @@ def run(arguments: argparse.Namespace) -> int:
     if report.planes is not None:
         planes = iter(report.planes)
     elif report.infinite and subspace.field.order is not None and not whole:
+        swept[1] = sweep_points(subspace.n, subspace.field.order)
         planes = iter_rational_planes(
             subspace, jobs=arguments.jobs, max_points=arguments.max_points, on_progress=note
         )

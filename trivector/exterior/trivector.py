@@ -92,6 +92,8 @@ class Trivector:
         return Trivector(self.field, coordinates)
 
     def _check(self, other: "Trivector") -> None:
+        if not isinstance(other, Trivector):
+            raise MixedFieldsError(f"a trivector and {other!r} do not go together")
         if self.field != other.field or self.n != other.n:
             raise MixedFieldsError(
                 f"trivectors over {self.field.name}, n = {self.n}, and over {other.field.name}, "

@@ -15,6 +15,8 @@ _RATIONAL = re.compile(r"\s*([-+]?[0-9]+)\s*(?:/\s*([0-9]+)\s*)?")
 
 def shorten(value: object, width: int = 40) -> str:
     """A value as it stands in an error message: at most ``width`` characters."""
+    if isinstance(value, int | Fraction) and not isinstance(value, bool):
+        value = fmpq(value.numerator, value.denominator)  # str() refuses many digits, flint not
     text = repr(value) if isinstance(value, str) else str(value)
     return text if len(text) <= width else f"{text[: width - 1]}…"
 
@@ -44,7 +46,7 @@ def parse_rational(value: Any) -> fmpq:
                 f"entry {shorten(value)} is not a number of this field; "
                 "write an integer or a fraction 'a/b'"
             )
-        numerator, denominator = fmpz(match[1]), fmpz(match[2] or 1)
+        numerator, denominator = fmpz(match[1].removeprefix("+")), fmpz(match[2] or 1)
         if denominator == 0:
             raise EntryError(f"entry {shorten(value)} has denominator 0; correct the fraction")
         return fmpq(numerator, denominator)

@@ -57,22 +57,32 @@ class FiniteElement:
         self.value = value
 
     def __add__(self, other: Any) -> "FiniteElement":
+        if not isinstance(other, _OPERANDS):
+            return NotImplemented
         return FiniteElement(self.value + _plain(other))
 
     def __sub__(self, other: Any) -> "FiniteElement":
+        if not isinstance(other, _OPERANDS):
+            return NotImplemented
         return FiniteElement(self.value - _plain(other))
 
     def __mul__(self, other: Any) -> "FiniteElement":
+        if not isinstance(other, _OPERANDS):
+            return NotImplemented
         return FiniteElement(self.value * _plain(other))
 
     def __truediv__(self, other: Any) -> "FiniteElement":
+        if not isinstance(other, _OPERANDS):
+            return NotImplemented
         divisor = _plain(other)
         if divisor == 0:
             raise ZeroDivisionError("division by zero in a finite field")
         return FiniteElement(self.value / divisor)
 
-    def __rsub__(self, other: int) -> "FiniteElement":
-        return FiniteElement(other - self.value)
+    def __rsub__(self, other: Any) -> "FiniteElement":
+        if not isinstance(other, _OPERANDS):
+            return NotImplemented
+        return FiniteElement(_plain(other) - self.value)
 
     __radd__ = __add__
     __rmul__ = __mul__
@@ -87,7 +97,7 @@ class FiniteElement:
         return not self.value.is_zero()
 
     def __eq__(self, other: object) -> bool:
-        if isinstance(other, FiniteElement | int):
+        if isinstance(other, _OPERANDS):
             return bool(self.value == _plain(other))
         return NotImplemented
 
@@ -96,6 +106,9 @@ class FiniteElement:
 
     def __repr__(self) -> str:
         return str(self.value)
+
+
+_OPERANDS = (FiniteElement, int)
 
 
 def _plain(value: Any) -> Any:

@@ -33,21 +33,31 @@ class NumberElement:
         return NumberElement(value, self.modulus)
 
     def __add__(self, other: Any) -> "NumberElement":
+        if not isinstance(other, _OPERANDS):
+            return NotImplemented
         return self._like(self.value + _plain(other))
 
     def __sub__(self, other: Any) -> "NumberElement":
+        if not isinstance(other, _OPERANDS):
+            return NotImplemented
         return self._like(self.value - _plain(other))
 
     def __rsub__(self, other: Any) -> "NumberElement":
+        if not isinstance(other, _OPERANDS):
+            return NotImplemented
         return self._like(_plain(other) - self.value)
 
     def __mul__(self, other: Any) -> "NumberElement":
+        if not isinstance(other, _OPERANDS):
+            return NotImplemented
         return self._like(self.value * _plain(other) % self.modulus)
 
     __radd__ = __add__
     __rmul__ = __mul__
 
     def __truediv__(self, other: Any) -> "NumberElement":
+        if not isinstance(other, _OPERANDS):
+            return NotImplemented
         divisor = _plain(other)
         if not divisor:
             raise ZeroDivisionError("division by zero in a number field")
@@ -63,7 +73,7 @@ class NumberElement:
         return bool(self.value)
 
     def __eq__(self, other: object) -> bool:
-        if isinstance(other, NumberElement | int | fmpq):
+        if isinstance(other, _OPERANDS):
             return bool(self.value == _plain(other))
         return NotImplemented
 
@@ -72,6 +82,9 @@ class NumberElement:
 
     def __repr__(self) -> str:
         return format_polynomial(self.value.coeffs(), "a")
+
+
+_OPERANDS = (NumberElement, int, fmpq)
 
 
 def _plain(value: Any) -> Any:

@@ -212,7 +212,8 @@ def prime_field(p: int) -> PrimeField:
             f"field F_{shorten(p)}: the prime must be less than 2^63; use a smaller one"
         )
     if p < 2 or not fmpz(p).is_prime():
-        raise FieldError(f"field F_{p}: {p} is not a prime{_factors(p)}; use a prime")
+        advice = 'write "Q" for characteristic 0' if p == 0 else "use a prime"
+        raise FieldError(f"field F_{p}: {p} is not a prime{_factors(p)}; {advice}")
     return PrimeField(p)
 
 

@@ -21,7 +21,8 @@ def section_report(section: SectionReport, title: str = "") -> RenderableType:
     heading = [Text(title, style="bold")] if title else []
     lines = [("dimension", str(space.dimension))]
     if space.dependent:
-        lines.append(("dependent rows", ", ".join(map(str, space.dependent)) + ", dropped"))
+        named = ", ".join(f"row {i}" for i in sorted(space.dependent))
+        lines.append(("dropped", f"{named}: dependent on rows before"))
     if space.n == 6:
         lines.append(("isotropic", answer(space.is_isotropic())))
         lines.append(("Lagrangian", answer(space.is_lagrangian())))

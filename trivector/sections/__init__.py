@@ -8,7 +8,11 @@ from trivector.sections.counting import (
 from trivector.sections.linear_section import LinearSection
 from trivector.sections.section_report import ClosedPoint, SectionReport
 from trivector.sections.study import Limits
-from trivector.sections.sweep import count_rational_planes, iter_rational_planes
+from trivector.sections.sweep import (
+    count_rational_planes,
+    iter_rational_planes,
+    sweep_points,
+)
 
 __all__ = [
     "ClosedPoint",
@@ -20,4 +24,5 @@ __all__ = [
     "count_over_extensions",
     "count_rational_planes",
     "iter_rational_planes",
+    "sweep_points",
 ]

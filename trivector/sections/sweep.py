@@ -303,6 +303,7 @@ class _Sweep:
         self.field = cast(Any, subspace.field)
         self.n, self.rows, self.jobs = subspace.n, subspace.rows, jobs
         self.report = on_progress or (lambda done, total: None)
+        self.done, self.due = 0, 0.0
         self.q = _order(subspace)
         if jobs < 1:
             raise UsageError(f"jobs must be at least 1, not {jobs}")
@@ -325,6 +326,7 @@ class _Sweep:
                     if any(x[:count])
                 )
             for u, w in pairs:
+                self._tick()
                 yield Plane(self.field, self.n, (tuple(u), tuple(w), tuple(v)))
 
     def count(self) -> int:
@@ -350,21 +352,26 @@ class _Sweep:
         """Each v with its pivot and a basis of {b : v∧b ∈ L}; uninteresting v left out."""
         if not self.rows:
             return
-        done, total = 0, sweep_points(self.n, self.q)
-        due = monotonic() + _SECONDS_BETWEEN_REPORTS
+        before = 0
         for i in range(2, self.n):
             cell = _Cell(self, (), i, self.rows)
             for last, found in self._screen(cell, _pfaffian_terms(self.n, i), self.jobs):
                 for index in found:
+                    self._tick(before + index)
                     v = cell.point(index)
                     bivectors = cell.solutions(v)
                     if bivectors:
                         yield i, v, bivectors
-                    if monotonic() > due:
-                        self.report(done + index, total)
-                        due = monotonic() + _SECONDS_BETWEEN_REPORTS
-                self.report(done + last, total)
-            done += cell.size
+                self.due = 0.0
+                self._tick(before + last)
+            before += cell.size
+
+    def _tick(self, done: int | None = None) -> None:
+        """Report, but not too often; also called where one point v takes long."""
+        self.done = self.done if done is None else done
+        if monotonic() >= self.due:
+            self.report(self.done, sweep_points(self.n, self.q))
+            self.due = monotonic() + _SECONDS_BETWEEN_REPORTS
 
     def _middle_rows(
         self, i: int, bivectors: list[list[Any]]
@@ -378,6 +385,7 @@ class _Sweep:
             cell = _Cell(self, (i,), j, bivectors)
             for _, found in self._screen(cell, (), 1):
                 for index in found:
+                    self._tick()
                     w = cell.point(index)
                     vectors = row_space(self.field, cell.solutions(w), self.n)
                     count = sum(any(row[:j]) for row in vectors)
@@ -433,6 +441,7 @@ class _Sweep:
         field, n = self.field, self.n
         pairs = subsets(n, 2)
         for x in self._common_zeros(quadrics, len(bivectors)):
+            self._tick()
             b = _combine(x, bivectors, field.zero)
             # The first nonzero entry of u∧w stands at the two pivots.
             position = next((k for k in _pairs_before(n, i) if b[k]), None)

@@ -22,7 +22,7 @@ __all__ = ["Flat", "Plane", "describe_dependency"]
 _WORDS = {-1: "empty", 0: "point", 1: "line", 2: "plane", 3: "solid"}
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Flat:
     """A projective subspace P(U) of P(V), kept by the canonical rows of U.
 
@@ -36,9 +36,17 @@ class Flat:
 
     @classmethod
     def span(cls, field: Field, n: int, vectors: Iterable[Sequence[Any]]) -> "Flat":
-        """The span of any vectors of k^n."""
+        """The span of any vectors of k^n; a plane is made by `Plane.from_rows`."""
+        if n < 1:
+            raise DimensionError(f"n must be positive, not {n}")
         rows = _checked_rows(field, n, vectors)
         return Flat(field, n, row_space(field, rows, n))
+
+    def __eq__(self, other: object) -> bool:
+        if not isinstance(other, Flat):
+            return NotImplemented
+        mine, theirs = (self.n, self.rows), (other.n, other.rows)
+        return mine == theirs and self.field == other.field
 
     @cached_property
     def _hash(self) -> int:
@@ -130,7 +138,7 @@ class Plane(Flat):
         DependentRowsError
             If the rows depend on each other; the message says which and how.
         """
-        given = [tuple(field.element(x) for x in row) for row in rows]
+        given = list(_checked_rows(field, None, rows))
         if len(given) != 3:
             raise DimensionError(f"a plane has 3 rows, not {len(given)}")
         n = len(given[0])
@@ -187,9 +195,13 @@ def describe_dependency(field: Field, index: int, coefficients: Sequence[Any]) -
     return f"row {index} = {text or '0'}"
 
 
-def _checked_rows(field: Field, n: int, vectors: Iterable[Sequence[Any]]) -> Rows:
-    rows = tuple(tuple(field.element(x) for x in vector) for vector in vectors)
-    wrong = next((i for i, row in enumerate(rows) if len(row) != n), None)
+def _checked_rows(field: Field, n: int | None, vectors: Iterable[Sequence[Any]]) -> Rows:
+    listed = list(vectors)
+    for i, vector in enumerate(listed):
+        if isinstance(vector, str) or not isinstance(vector, Iterable):
+            raise DimensionError(f"row {i} must be a list of entries, not {vector!r}")
+    rows = tuple(tuple(field.element(x) for x in vector) for vector in listed)
+    wrong = next((i for i, row in enumerate(rows) if n is not None and len(row) != n), None)
     if wrong is not None:
         raise DimensionError(f"row {wrong} must have {n} entries, not {len(rows[wrong])}")
     return rows

@@ -7,8 +7,9 @@ from math import comb
 from typing import Any
 
 from trivector.errors import DimensionError, MixedFieldsError, NotLagrangianError, UsageError
-from trivector.exterior.basis import DIMENSIONS, subsets, wedge_terms
+from trivector.exterior.basis import DIMENSIONS, wedge_terms
 from trivector.exterior.products import gram_row, pairing, quadratic_form
+from trivector.exterior.trivector import Trivector
 from trivector.fields.linear import (
     Rows,
     dependencies,
@@ -32,7 +33,7 @@ class OffendingPair:
     value: Any
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Subspace:
     """A linear subspace L ⊂ ∧³k^n, kept by its canonical rows.
 
@@ -77,9 +78,18 @@ class Subspace:
     def from_terms(
         cls, field: Field, n: int, vectors: Iterable[dict[tuple[int, ...], Any]]
     ) -> "Subspace":
-        """The span of trivectors given by their coefficients of e_i∧e_j∧e_k, i < j < k."""
-        triples = subsets(n, 3)
-        return cls.span(field, n, [[terms.get(t, 0) for t in triples] for terms in vectors])
+        """The span of trivectors given by their coefficients of e_i∧e_j∧e_k, in any order."""
+        made = [Trivector.from_terms(field, n, terms).coordinates for terms in vectors]
+        return cls.span(field, n, made)
+
+    def __eq__(self, other: object) -> bool:
+        if not isinstance(other, Subspace):
+            return NotImplemented
+        mine, theirs = (self.n, self.rows), (other.n, other.rows)
+        return mine == theirs and self.field == other.field
+
+    def __hash__(self) -> int:
+        return hash((self.n, self.rows))
 
     @property
     def dimension(self) -> int:
@@ -148,13 +158,20 @@ class Subspace:
 
     def contains(self, vector: Sequence[Any]) -> bool:
         """Whether a vector of C(n,3) entries lies in L."""
-        values = [self.field.element(x) for x in vector]
+        values = self._vector(vector)
         return not any(reduce_vector(values, self.rows))
 
     def coordinates(self, vector: Sequence[Any]) -> tuple[Any, ...] | None:
         """The coordinates of a vector in the basis `rows`; None if it is not in L."""
-        values = [self.field.element(x) for x in vector]
+        values = self._vector(vector)
         return solve(self.field, self.rows, values, self.ambient_dimension)
+
+    def _vector(self, vector: Sequence[Any]) -> list[Any]:
+        if len(vector) != self.ambient_dimension:
+            raise DimensionError(
+                f"a vector of ∧³V has {self.ambient_dimension} entries, not {len(vector)}"
+            )
+        return [self.field.element(x) for x in vector]
 
     def to_entries(self) -> list[list[int | str]]:
         """The rows as they stand in a JSON document."""
@@ -185,6 +202,7 @@ class Lagrangian(Subspace):
             With the dimension, or two basis vectors and their pairing.
         """
         space = Subspace.span(field, n, vectors)
+        space._require_six("a Lagrangian")
         if space.dimension != 10:
             raise NotLagrangianError(
                 f"a Lagrangian has dimension 10, not {space.dimension}; give ten independent rows"
