@@ -13,6 +13,7 @@ from math import comb
 from random import Random
 from typing import Any
 
+import numpy as np
 import oracle
 
 from trivector.fields import Field
@@ -491,3 +492,95 @@ def random_incident_planes(field: Field, count: int, rng: Random) -> list[Plane]
                 planes.append(Plane.from_rows(field, rows))
         if len(set(planes)) == count:
             return planes
+
+
+# All planes of PG(5, q), for brute force
+
+
+@cache
+def all_planes(q: int) -> list[oracle.Matrix]:
+    return list(oracle.all_planes(q))
+
+
+@cache
+def plucker_table(q: int) -> Any:
+    """The Plücker vectors of `all_planes`, one row each, as a numpy array of residues."""
+    rows = np.array(all_planes(q), dtype=np.int64)
+    a, b, c = rows[:, 0], rows[:, 1], rows[:, 2]
+    columns = [
+        a[:, i] * (b[:, j] * c[:, k] - b[:, k] * c[:, j])
+        - a[:, j] * (b[:, i] * c[:, k] - b[:, k] * c[:, i])
+        + a[:, k] * (b[:, i] * c[:, j] - b[:, j] * c[:, i])
+        for i, j, k in TRIPLES
+    ]
+    return np.stack(columns, axis=1) % q
+
+
+def planes_pairing_to_zero(q: int, vectors: Sequence[Sequence[Any]]) -> list[oracle.Matrix]:
+    """Every plane of PG(5, q) whose Plücker vector pairs to zero with all of these."""
+    table = plucker_table(q)
+    kept = np.ones(len(table), dtype=bool)
+    for vector in vectors:
+        form = np.zeros(20, dtype=np.int64)
+        for position, triple in enumerate(TRIPLES):
+            rest = tuple(i for i in range(6) if i not in triple)
+            form[TRIPLES.index(rest)] = oracle.permutation_sign(triple + rest) * int(
+                vector[position]
+            )
+        kept &= (table @ form) % q == 0
+    everything = all_planes(q)
+    return [everything[i] for i in np.flatnonzero(kept)]
+
+
+# Planes with multiplicity
+
+
+def osculating_rows(order: int, n: int = 6) -> IntegerRows:
+    """c_0, …, c_order of (e0 + s·e3)∧(e1 + s·e4)∧(e2 + s·e5) = Σ s^i·c_i.
+
+    The curve is a twisted cubic in P(⟨c_0, …, c_3⟩), and all of G(3,n) that
+    lies there, so that the section by the osculating space ⟨c_0, …, c_i⟩ at
+    e0∧e1∧e2 is that point with multiplicity i + 1, i ≤ 2 (classical).
+    """
+    s: Polynomial = {(1,): 1}
+    one: Polynomial = {(0,): 1}
+    rows = [[one if j == i else s if j == i + 3 else {} for j in range(n)] for i in range(3)]
+    coordinates = [_minor(rows, triple) for triple in combinations(range(n), 3)]
+    return [[p.get((i,), 0) for p in coordinates] for i in range(order + 1)]
+
+
+def fat_space(
+    field: Field, orders: Sequence[int], rng: Random, *, n: int = 6, others: int = 0
+) -> tuple[Subspace, list[Plane]]:
+    """Osculating spaces at random planes, and random trivectors, added up; the planes."""
+    total = Subspace.span(field, n, random_rows(field, others, comb(n, 3), rng))
+    planes = []
+    for order in orders:
+        g = random_invertible(field, n, rng)
+        space = Subspace.span(field, n, osculating_rows(order, n))
+        total = total.sum(image_of_space(field, g, space))
+        planes.append(image(field, g, Plane.from_rows(field, [unit(i, n) for i in range(3)])))
+    return total, planes
+
+
+def plane_of_the_cyclic_lagrangian(field: Field) -> Plane:
+    """The plane of the cyclic Lagrangian modulo 11, found among the stable ones.
+
+    The section modulo 11 has one closed point (computed), so the plane is
+    stable under e_i → e_{i+1}, i in 1 … 5 cyclic, and is spanned by
+    eigenvectors: Σ ζ^−i·e_i with ζ^5 = 1, and e0. All 80 stable planes are
+    tried, and exactly one lies in the Lagrangian.
+    """
+    assert field.characteristic == 11
+    space = cyclic_lagrangian(field)
+    roots = [z for z in range(1, 11) if pow(z, 5, 11) == 1]
+    lines = [[0, *(pow(z, -i, 11) for i in range(5))] for z in roots if z != 1]
+    fixed = [[0, 1, 1, 1, 1, 1], *([1, *[x] * 5] for x in range(11))]
+    candidates = [
+        *combinations(lines, 3),
+        *((a, b, c) for a, b in combinations(lines, 2) for c in fixed),
+        *((a, unit(0), fixed[0]) for a in lines),
+    ]
+    assert len(candidates) == 80
+    (found,) = (p for p in over(field, candidates) if space.contains(p.plucker))
+    return found

@@ -48,7 +48,7 @@ def exchange_relations(n: int) -> tuple[tuple[tuple[int, int, int], ...], ...]:
 
 
 def section_quadrics(field: Field, rows: Sequence[Sequence[Any]], n: int) -> list[Quadric]:
-    """Every exchange relation at Σ x_a·b_a, expanded term by term."""
+    """Every exchange relation at Σ x_a·b_a, expanded term by term; a basis of their span."""
     quadrics = []
     for relation in exchange_relations(n):
         quadric: Quadric = {}
@@ -63,7 +63,15 @@ def section_quadrics(field: Field, rows: Sequence[Sequence[Any]], n: int) -> lis
         quadric = {key: value for key, value in quadric.items() if value}
         if quadric:
             quadrics.append(quadric)
-    return quadrics
+    pairs = list(combinations_with_replacement(range(len(rows)), 2))
+    matrix = field.matrix(
+        [[q.get(pair, field.zero) for pair in pairs] for q in quadrics], len(pairs)
+    )
+    reduced, rank = matrix.rref()
+    return [
+        {pair: value for j, pair in enumerate(pairs) if (value := reduced[i, j])}
+        for i in range(rank)
+    ]
 
 
 def hilbert(field: Field, size: int, quadrics: Sequence[Quadric], degree: int) -> int:

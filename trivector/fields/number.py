@@ -224,7 +224,7 @@ class NumberField:
 
     @property
     def work_factor(self) -> int:
-        return 8
+        return 4
 
     def integral_basis(self, rows: Sequence[Sequence[Any]]) -> list[list[Any]]:
         return [list(row) for row in rows]

@@ -37,18 +37,16 @@ class Decision:
 
     def run(self) -> SectionReport:
         """Try one reduction after another until one decides."""
-        undecided: SectionReport | None = None
+        undecided = self._report(limit=f"{self.limits.max_primes} primes, all of them bad")
         for reduction in islice(self.subspace.field.reductions(), self.limits.max_primes):
             try:
-                found = self._study(reduction)
+                report = self._conclude(self._study(reduction), reduction)
             except BadReductionError:
                 continue
-            report = self._conclude(found, reduction)
-            if report.complete_over_closure is not None and report.limit is None:
+            if report.complete_over_closure is not None:
                 return report
-            if undecided is None or undecided.complete_over_closure is None:
-                undecided = report
-        return undecided or self._report(limit=f"{self.limits.max_primes} primes, all of them bad")
+            undecided = report
+        return undecided
 
     def _report(self, **found: Any) -> SectionReport:
         """A report with the statements over the base field that follow."""
@@ -206,8 +204,6 @@ class Decision:
         exact, limit = self._exact_hilbert(found, polynomial, reduction)
         if exact is None:
             return self._report(**common, limit=limit)
-        if not exact:  # H is larger modulo this prime than over the field
-            return self._report(limit=f"{reduction.name} is a bad reduction")
         return self._report(
             **common,
             degree=length,
@@ -226,8 +222,6 @@ class Decision:
         exact, limit = self._exact_hilbert(found, polynomial, reduction)
         if exact is None:
             return replace(self._undecided(found), limit=limit)
-        if not exact:
-            return self._report(limit=f"{reduction.name} is a bad reduction")
         dimension, degree = polynomial.dimension, polynomial.degree
         return self._infinite_report(
             projective_dimension=dimension,
@@ -298,14 +292,18 @@ class Decision:
             return _listed(below, polynomial)
         top = start - 1 if found.complete_degree is not None else start + 1
         algebra, _ = self._exact_algebra(self._small_rows(), top)
-        if algebra is None or len(algebra.hilbert) <= min(top, 2):
+        if algebra is None:
             return None
         return _listed(tuple(algebra.hilbert[: top + 1]), polynomial)
 
     def _exact_hilbert(
         self, found: Study, polynomial: HilbertPolynomial, reduction: Reduction
     ) -> tuple[tuple[int, ...] | None, str | None]:
-        """H over the field of the data; () if it differs; None with the limit if unknown."""
+        """H over the field of the data; or None, with the limit that was hit.
+
+        `BadReductionError` if it differs from the one found, so that another
+        prime is tried.
+        """
         if reduction.exact or found.proper:
             return _listed(found.hilbert, polynomial), None
         start = polynomial.start
@@ -314,7 +312,7 @@ class Decision:
             return None, limit
         exact = tuple(algebra.hilbert)
         if exact[start : start + 2] != found.hilbert[start : start + 2]:
-            return (), None
+            raise BadReductionError(f"the Hilbert function is larger {reduction.name}")
         return _listed(exact, polynomial), None
 
     def _small_rows(self) -> list[list[Any]]:

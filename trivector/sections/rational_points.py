@@ -12,6 +12,7 @@ checked over ℚ; the primes only suggest it.
 
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
+from itertools import islice
 from math import isqrt
 from random import Random
 from typing import Any
@@ -86,7 +87,7 @@ def rational_scheme_points(
     form, other = chosen
     residues: list[int] = []
     modulus, used, next_try, best = 1, 0, 1, 0
-    for field in _primes():
+    for field in islice(_primes(), 2 * max_primes):
         image = _modular_image(field, rows, n, degree, hilbert, form, other)
         if image is None:
             continue
@@ -109,7 +110,7 @@ def rational_scheme_points(
             if points is not None:
                 return points
         if used >= max_primes:
-            return None
+            break
     return None
 
 

@@ -33,7 +33,7 @@ class Limits:
         The highest degree of the Hilbert function.
     max_columns : int
         The widest matrix that is row-reduced over ℚ or F_p; over F_q half
-        as wide, over number fields and very large F_q an eighth.
+        as wide, over number fields a quarter, over very large F_q an eighth.
     max_primes : int
         How many primes are tried for data over an infinite field.
     max_lift_primes : int
