@@ -273,6 +273,9 @@ class Family:
     degree: int
     count: Callable[[int], int]
 
+    def __str__(self) -> str:
+        return self.name
+
     def lagrangian(self, field: Field) -> Subspace:
         return Subspace.span(field, 6, self.basis)
 
@@ -516,20 +519,45 @@ def plucker_table(q: int) -> Any:
     return np.stack(columns, axis=1) % q
 
 
+def pairs_to_zero(q: int, vector: Sequence[Any]) -> Any:
+    """For each of `all_planes`, whether its Plücker vector pairs to zero with this one."""
+    form = np.zeros(20, dtype=np.int64)
+    for triple, value in zip(TRIPLES, vector, strict=True):
+        rest = tuple(i for i in range(6) if i not in triple)
+        form[TRIPLES.index(rest)] = oracle.permutation_sign(triple + rest) * int(value)
+    return (plucker_table(q) @ form) % q == 0
+
+
 def planes_pairing_to_zero(q: int, vectors: Sequence[Sequence[Any]]) -> list[oracle.Matrix]:
     """Every plane of PG(5, q) whose Plücker vector pairs to zero with all of these."""
-    table = plucker_table(q)
-    kept = np.ones(len(table), dtype=bool)
+    kept = np.ones(len(plucker_table(q)), dtype=bool)
     for vector in vectors:
-        form = np.zeros(20, dtype=np.int64)
-        for position, triple in enumerate(TRIPLES):
-            rest = tuple(i for i in range(6) if i not in triple)
-            form[TRIPLES.index(rest)] = oracle.permutation_sign(triple + rest) * int(
-                vector[position]
-            )
-        kept &= (table @ form) % q == 0
+        kept &= pairs_to_zero(q, vector)
     everything = all_planes(q)
     return [everything[i] for i in np.flatnonzero(kept)]
+
+
+def random_clique(field: Field, size: int, rng: Random) -> tuple[list[Plane], list[Plane]]:
+    """Pairwise incident planes over F_q, each drawn among all that meet those before.
+
+    Returns them, at most ``size``, and all further planes over F_q that meet all of them.
+    """
+    q = int(field.characteristic)
+    everything = all_planes(q)
+    left = np.ones(len(everything), dtype=bool)
+    planes: list[Plane] = []
+    while len(planes) < size and left.any():
+        chosen = rng.choice(np.flatnonzero(left).tolist())
+        plane = Plane.from_rows(field, everything[chosen])
+        left &= pairs_to_zero(q, plane.plucker)
+        left[chosen] = False
+        planes.append(plane)
+    return planes, [Plane.from_rows(field, everything[i]) for i in np.flatnonzero(left)]
+
+
+def planes_meeting_all(q: int, planes: Sequence[Plane]) -> list[oracle.Matrix]:
+    """Every plane of PG(5, q) that shares a point with each of the given ones (n = 6)."""
+    return planes_pairing_to_zero(q, [plane.plucker for plane in planes])
 
 
 # Planes with multiplicity

@@ -2,6 +2,7 @@
 
 import ast
 import os
+import re
 import subprocess
 import sys
 from collections.abc import Iterator
@@ -87,14 +88,19 @@ def test_every_room_imports_only_from_rooms_with_a_smaller_number() -> None:
     assert layer_faults(PACKAGE) == []
 
 
-def test_every_room_of_the_package_says_which_question_it_answers() -> None:
-    rooms = [path for path in PACKAGE.iterdir() if path.name.removesuffix(".py") in ROOMS]
-    assert len(rooms) >= 9
-    for room in rooms:
-        if room.stem != "__main__":
-            source = room / "__init__.py" if room.is_dir() else room
-            docstring = ast.get_docstring(ast.parse(source.read_text("utf-8"))) or ""
-            assert "? " in f"{docstring.splitlines()[0]} ", room.name
+def existing_rooms() -> list[str]:
+    """The rooms that the package has so far, without the way in."""
+    names = (path.name.removesuffix(".py") for path in PACKAGE.iterdir())
+    return sorted(name for name in names if name in ROOMS and name != "__main__")
+
+
+def test_every_room_says_which_question_it_answers() -> None:
+    assert len(existing_rooms()) >= 9
+    for room in existing_rooms():
+        folder = PACKAGE / room
+        source = folder / "__init__.py" if folder.is_dir() else PACKAGE / f"{room}.py"
+        docstring = ast.get_docstring(ast.parse(source.read_text("utf-8"))) or ""
+        assert "? " in f"{docstring.splitlines()[0]} ", room
 
 
 def plant(folder: Path, where: str, text: str) -> Path:
@@ -223,3 +229,16 @@ def test_the_directory_of_the_package_is_its_public_names() -> None:
     assert dir(trivector) == sorted(trivector.__all__)
     with pytest.raises(AttributeError, match="no attribute 'nonsense'"):
         _ = trivector.nonsense
+
+
+def test_the_guide_for_developers_shows_the_same_numbers_and_questions() -> None:
+    guide = (ROOT / "DEVELOPERS.md").read_text("utf-8")
+    table = re.findall(r"^\| ([0-9]) \| `([a-z]+)` \| (.*\?.*) \|$", guide, re.MULTILINE)
+    assert {room: int(number) for number, room, _ in table} == {
+        room: number for room, number in ROOMS.items() if room in existing_rooms()
+    }
+    later = dict(re.findall(r"`([a-z]+)`\s([0-9])", guide))
+    expected = set(ROOMS) - set(existing_rooms()) - {"__main__"}
+    assert {room: int(number) for room, number in later.items()} == {
+        room: ROOMS[room] for room in expected
+    }

@@ -102,10 +102,11 @@ def iter_rational_planes(
 
     Notes
     -----
-    Cost: about q^(n−3) eliminations of six rows (n = 6) or ten (n = 7), half
-    a microsecond each, and some 50 µs for each plane. When dim L is so large
-    that dim {b} ≥ n − 1 at each point (from 15 on for n = 6, from 26 on for
-    n = 7), each point v needs a sweep over points w.
+    Cost: about q^(n−3) eliminations of six rows (n = 6) or ten (n = 7), some
+    tenths of a microsecond each, one or two microseconds if dim L > C(n−1,3);
+    and 10 to 100 µs for each plane over a prime field. When dim {b} ≥ n − 1
+    at every point, that is dim L ≥ 15 for n = 6 and ≥ 26 for n = 7, each v
+    needs a sweep over points w; these count for ``max_points`` as well.
 
     Source: elementary, from the uniqueness of the reduced row echelon form.
 
