@@ -8,7 +8,7 @@ from typing import NoReturn
 
 from trivector import __version__
 from trivector.cli import count, examine, planes
-from trivector.errors import TrivectorError, UsageError
+from trivector.errors import DocumentError, TrivectorError, UsageError
 
 __all__ = ["build_parser", "main"]
 
@@ -47,17 +47,32 @@ def main(argv: Sequence[str] | None = None) -> int:
     try:
         arguments = build_parser().parse_args(argv)
         code: int = arguments.run(arguments)
-        sys.stdout.flush()
+        if sys.stdout is not None:
+            sys.stdout.flush()
     except TrivectorError as error:
-        for line in str(error).splitlines():
-            print(f"trivector: {line}", file=sys.stderr)
+        faults = error.faults if isinstance(error, DocumentError) else (str(error),)
+        for fault in faults:
+            print(f"trivector: {_on_one_line(fault)}", file=sys.stderr)
         return error.exit_code
     except KeyboardInterrupt:
         print("trivector: interrupted; nothing was written", file=sys.stderr)
         return 130
     except BrokenPipeError:
         # The reader has gone, as in `trivector … | head`; nothing is left to say.
-        # A closed pipe would be flushed again at exit, so standard output goes nowhere.
-        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        _silence_output()
         return 0
+    except OSError as error:
+        print(f"trivector: the answer cannot be written ({error.strerror})", file=sys.stderr)
+        _silence_output()
+        return 2
     return code
+
+
+def _on_one_line(text: str) -> str:
+    """Control characters in quoted input must not break the line."""
+    return "".join(c if c.isprintable() else repr(c)[1:-1] for c in text)
+
+
+def _silence_output() -> None:
+    """Send what is left in standard output nowhere, or Python flushes it again at exit."""
+    os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())

@@ -96,6 +96,8 @@ def write_answer(
 def open_output(arguments: argparse.Namespace) -> Iterator[TextIO]:
     """The file of -o, or standard output."""
     if arguments.output is None:
+        if sys.stdout is None:
+            raise UsageError("standard output is closed; name a file with -o")
         yield sys.stdout
         return
     try:

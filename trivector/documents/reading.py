@@ -1,15 +1,22 @@
 """From a document to the object it describes, or to all of its faults at once."""
 
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Iterable, Iterator, Sequence
 from dataclasses import replace
 from functools import partial
+from itertools import chain
 from math import comb
 from pathlib import Path
 from typing import Any, TypeVar
 
 from trivector.configurations import Configuration
 from trivector.documents.sources import read_text
-from trivector.documents.syntax import TextBlock, is_json, parse_json, parse_text
+from trivector.documents.syntax import (
+    ENTRIES_KEPT,
+    TextBlock,
+    is_json,
+    parse_json,
+    parse_text,
+)
 from trivector.errors import DocumentError, TrivectorError
 from trivector.exterior import Trivector
 from trivector.exterior.basis import DIMENSIONS, dimension_from_size
@@ -69,9 +76,11 @@ def read(path: str | Path, *, field: Field | str | None = None) -> Document:
         document = _from_json(parse_json(text, name), wanted, faults)
     else:
         document = _from_text(parse_text(text), wanted, faults)
+    if document is not None and wanted is not None:
+        document = _in_field(document, wanted, faults)
     if document is None or faults.found:
         raise DocumentError(faults.sentences())
-    return document if wanted is None else _in_field(document, wanted)
+    return document
 
 
 def _wanted_field(field: Field | str | None) -> Field | None:
@@ -80,7 +89,7 @@ def _wanted_field(field: Field | str | None) -> Field | None:
     return field_from_spec(parse_json(field, "field") if field.startswith("{") else field)
 
 
-def _in_field(document: Document, field: Field) -> Document:
+def _in_field(document: Document, field: Field, faults: "_Faults") -> Document | None:
     """The document itself, or what it becomes over another field than ℚ."""
     if isinstance(document, Configuration):
         if document.field == field:
@@ -91,7 +100,11 @@ def _in_field(document: Document, field: Field) -> Document:
         if document.field == field:
             return document
         return Subspace.span(field, document.n, _lattice(document.rows))
-    return tuple(Trivector(field, trivector.coordinates) for trivector in document)
+    vectors = [
+        _entries(trivector.coordinates, f"trivectors[{i}]", field, faults)
+        for i, trivector in enumerate(document)
+    ]
+    return None if faults.found else tuple(Trivector(field, vector) for vector in _all(vectors))
 
 
 def _lattice(rows: Rows) -> list[list[Any]]:
@@ -120,8 +133,21 @@ class _Faults:
 
     def sentences(self) -> list[str]:
         shown = self.found[:_MOST_FAULTS]
-        hidden = len(self.found) - len(shown)
-        return [*shown, f"{self.name}: … and {hidden} more faults"] if hidden else shown
+        if not self.full:
+            return shown
+        return [*shown, f"{self.name}: … and more faults; correct these first"]
+
+    @property
+    def full(self) -> bool:
+        """Whether there are more faults than are shown."""
+        return len(self.found) > _MOST_FAULTS
+
+    def each(self, items: Iterable[_T]) -> Iterator[_T]:
+        """The items, until there are too many faults to go on."""
+        for item in items:
+            if self.full:
+                return
+            yield item
 
 
 def _from_json(data: Any, wanted: Field | None, faults: _Faults) -> Document | None:
@@ -129,16 +155,16 @@ def _from_json(data: Any, wanted: Field | None, faults: _Faults) -> Document | N
         faults.add("", 'must be an object with a "kind", not a list or a single value')
         return None
     kind = data.get("kind")
-    if kind not in _KINDS:
+    if not isinstance(kind, str) or kind not in _KINDS:
         known = ", ".join(f'"{k}"' for k in _KINDS)
         found = f"kind {shorten(kind)} is unknown" if "kind" in data else 'no "kind"'
         faults.add("", f"{found}; write one of {known}")
     field = _field(data, wanted, faults)
     n = data.get("dimension", 6)
-    if n not in DIMENSIONS or isinstance(n, bool):
+    if type(n) is not int or n not in DIMENSIONS:
         faults.add("dimension", f"must be 6 or 7, the dimension of V, not {shorten(n)}")
         n = None
-    if kind not in _KINDS:
+    if not isinstance(kind, str) or kind not in _KINDS:
         return None
     key = _KINDS[kind]
     items = data.get(key)
@@ -151,9 +177,15 @@ def _from_json(data: Any, wanted: Field | None, faults: _Faults) -> Document | N
     if field is None or n is None:
         return None
     if kind == "planes":
-        planes = [_plane(item, f"planes[{i}]", field, n, faults) for i, item in enumerate(items)]
+        planes = [
+            _plane(item, f"planes[{i}]", field, n, faults)
+            for i, item in faults.each(enumerate(items))
+        ]
         return None if faults.found else Configuration(_all(planes), labels, **texts)
-    rows = [_vector(item, f"{key}[{i}]", field, comb(n, 3), faults) for i, item in enumerate(items)]
+    rows = [
+        _vector(item, f"{key}[{i}]", field, comb(n, 3), faults)
+        for i, item in faults.each(enumerate(items))
+    ]
     if faults.found:
         return None
     if kind == "subspace":
@@ -245,7 +277,7 @@ def _entries(items: Sequence[Any], place: str, field: Field, faults: _Faults) ->
 
 
 def _from_text(
-    blocks: list[TextBlock], wanted: Field | None, faults: _Faults
+    blocks: Iterator[TextBlock], wanted: Field | None, faults: _Faults
 ) -> Configuration | None:
     if wanted is None:
         faults.add(
@@ -254,37 +286,36 @@ def _from_text(
             "for example --field Q",
         )
         return None
-    n = _text_dimension(blocks)
+    first = next(blocks, None)
+    if first is None:
+        faults.add("", "no numbers; give rows of numbers, three for each plane")
+        return None
+    number, entries = first.lines[0]
+    n = len(entries) if len(entries) in DIMENSIONS else dimension_from_size(len(entries))
     if n is None:
-        number, entries = blocks[0].lines[0] if blocks else (1, ())
+        many = f"{ENTRIES_KEPT} or more" if len(entries) == ENTRIES_KEPT else str(len(entries))
         faults.add(
             f"line {number}",
-            f"has {len(entries)} entries; a row has 6 or 7, a Plücker vector 20 or 35",
+            f"has {many} entries; a row has 6 or 7, a Plücker vector 20 or 35",
         )
         return None
-    planes = []
-    for block in blocks:
-        if len(faults.found) > _MOST_FAULTS:
-            break
-        first = block.lines[0][0]
-        widths = {len(entries) for _, entries in block.lines}
-        if widths == {comb(n, 3)}:
-            for number, entries in block.lines:
-                planes.append(_plane(list(entries), f"line {number}", wanted, n, faults))
-        else:
-            before = len(faults.found)
-            if len(block.lines) != 3:
-                faults.add(
-                    f"lines {first}–{block.lines[-1][0]}",
-                    f"a plane is 3 rows, not {len(block.lines)}; separate planes by blank lines",
-                )
-            rows = [_vector(list(e), f"line {k}", wanted, n, faults) for k, e in block.lines]
-            if len(faults.found) == before:
-                planes.append(_plane(rows, f"plane at line {first}", wanted, n, faults))
+    planes = [
+        _text_plane(block, wanted, n, faults) for block in faults.each(chain([first], blocks))
+    ]
     return None if faults.found else Configuration(_all(planes))
 
 
-def _text_dimension(blocks: list[TextBlock]) -> int | None:
-    """n, from the width of the first row."""
-    width = len(blocks[0].lines[0][1]) if blocks else 0
-    return width if width in DIMENSIONS else dimension_from_size(width)
+def _text_plane(block: TextBlock, field: Field, n: int, faults: _Faults) -> Plane | None:
+    first, entries = block.lines[0]
+    if block.count == 1 and len(entries) == comb(n, 3):
+        return _plane(list(entries), f"line {first}", field, n, faults)
+    before = len(faults.found)
+    if block.count != 3:
+        faults.add(
+            f"line {first}" if block.count == 1 else f"lines {first}–{block.last}",
+            f"a plane is 3 rows, not {block.count}; separate planes by blank lines",
+        )
+    rows = [_vector(list(e), f"line {k}", field, n, faults) for k, e in block.lines]
+    if len(faults.found) > before:
+        return None
+    return _plane(rows, f"plane at line {first}", field, n, faults)

@@ -26,9 +26,9 @@ def read_text(path: str | Path) -> str:
     DocumentError
         If it cannot be read, is too large, or is not UTF-8; with the reason.
     """
-    name = str(path)
+    name = "standard input" if str(path) == "-" else str(path)
     try:
-        data = _read_bytes(name)
+        data = _read_bytes(str(path))
     except FileNotFoundError:
         raise DocumentError([f"{name}: no such file; check the path"]) from None
     except IsADirectoryError:
@@ -50,6 +50,8 @@ def read_text(path: str | Path) -> str:
 
 def _read_bytes(name: str) -> bytes:
     if name == "-":
+        if sys.stdin is None:
+            raise OSError("standard input is closed")
         return sys.stdin.buffer.read(LARGEST + 1)
     if name.endswith(".gz"):
         with gzip.open(name, "rb") as file:

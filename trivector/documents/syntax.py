@@ -2,15 +2,32 @@
 
 import json
 import re
+from collections.abc import Iterator
 from dataclasses import dataclass
+from io import StringIO
 from typing import Any, NoReturn
 
 from flint import fmpz
 
 from trivector.errors import DocumentError
+from trivector.exterior.basis import dimension_from_size
 
-__all__ = ["FloatLiteral", "TextBlock", "is_json", "parse_json", "parse_text"]
+__all__ = [
+    "ENTRIES_KEPT",
+    "FloatLiteral",
+    "TextBlock",
+    "is_json",
+    "parse_json",
+    "parse_text",
+]
 
+LINES_KEPT = 4
+"""A plane has three rows; a fourth line shows that there are too many."""
+
+ENTRIES_KEPT = 40
+"""The longest row is a Plücker vector of 35 entries."""
+
+_MOST_FLOATS = 10_000
 # int() refuses more digits than this by default; flint does not.
 _SAFE_DIGITS = 4000
 _SEPARATORS = re.compile(r"[\s,;]+")
@@ -32,9 +49,21 @@ class FloatLiteral(float):
 
 @dataclass(frozen=True)
 class TextBlock:
-    """Lines of numbers between blank lines: (line number from 1, entries)."""
+    """Lines of numbers that belong together.
+
+    Attributes
+    ----------
+    lines : tuple of (line number from 1, entries)
+        The first `LINES_KEPT` of them; no more than `ENTRIES_KEPT` entries each.
+    count : int
+        How many lines there are.
+    last : int
+        The number of the last line.
+    """
 
     lines: tuple[tuple[int, tuple[str, ...]], ...]
+    count: int
+    last: int
 
 
 def is_json(text: str) -> bool:
@@ -51,11 +80,22 @@ def parse_json(text: str, name: str) -> Any:
         With line and column where the syntax breaks; for a key that occurs
         twice in one object; for nesting that is too deep.
     """
+    floats = 0
+
+    def parse_float(digits: str) -> FloatLiteral:
+        nonlocal floats
+        floats += 1
+        if floats > _MOST_FLOATS:
+            raise DocumentError(
+                [f"{name}: floats such as {digits}; entries are integers or fractions 'a/b'"]
+            )
+        return FloatLiteral(digits)
+
     try:
         return json.loads(
             text,
             parse_int=_exact_int,
-            parse_float=FloatLiteral,
+            parse_float=parse_float,
             parse_constant=FloatLiteral,
             object_pairs_hook=lambda pairs: _object(pairs, name),
         )
@@ -79,9 +119,11 @@ def _exact_int(digits: str) -> int:
 def _object(pairs: list[tuple[str, Any]], name: str) -> dict[str, Any]:
     result = dict(pairs)
     if len(result) < len(pairs):
-        keys = [key for key, _ in pairs]
-        twice = next(key for key in keys if keys.count(key) > 1)
-        _refuse(f"{name}: key {twice!r} occurs twice in one object; remove one of them")
+        seen: set[str] = set()
+        for key, _ in pairs:
+            if key in seen:
+                _refuse(f"{name}: key {key!r} occurs twice in one object; remove one of them")
+            seen.add(key)
     return result
 
 
@@ -89,21 +131,28 @@ def _refuse(fault: str) -> NoReturn:
     raise DocumentError([fault])
 
 
-def parse_text(text: str) -> list[TextBlock]:
+def parse_text(text: str) -> Iterator[TextBlock]:
     """Blocks of rows: entries separated by spaces or commas, blocks by blank lines.
 
-    ``#`` starts a comment; a line that holds only a comment separates nothing.
+    ``#`` starts a comment; a line that holds only a comment separates
+    nothing. A row as long as a Plücker vector is a block of its own. Lazy,
+    so that a long file of garbage is not read beyond its first faults.
     """
-    blocks: list[TextBlock] = []
     lines: list[tuple[int, tuple[str, ...]]] = []
-    for number, line in enumerate(text.splitlines(), start=1):
-        content, _, _ = line.partition("#")
-        entries = tuple(entry for entry in _SEPARATORS.split(content) if entry)
-        if entries:
-            lines.append((number, entries))
+    count = last = 0
+    for number, line in enumerate(StringIO(text), start=1):
+        content = line.partition("#")[0].strip(" \t\r\n\f\v,;")
+        if content:
+            count, last = count + 1, number
+            if len(lines) < LINES_KEPT:
+                entries = tuple(_SEPARATORS.split(content, maxsplit=ENTRIES_KEPT - 1))
+                if count == 1 and dimension_from_size(len(entries)):
+                    yield TextBlock(((number, entries),), 1, number)
+                    count = 0
+                else:
+                    lines.append((number, entries))
         elif not line.strip() and lines:
-            blocks.append(TextBlock(tuple(lines)))
-            lines = []
+            yield TextBlock(tuple(lines), count, last)
+            lines, count = [], 0
     if lines:
-        blocks.append(TextBlock(tuple(lines)))
-    return blocks
+        yield TextBlock(tuple(lines), count, last)

@@ -8,6 +8,7 @@ from typing import Any
 
 from trivector.exterior.basis import index_of, sort_sign, subset_name, subsets
 from trivector.exterior.products import minors, plane_candidate
+from trivector.fields.entries import shorten
 
 __all__ = ["PluckerRelation", "Violation", "decompose", "plucker_relations"]
 
@@ -52,7 +53,7 @@ class Violation:
     value: Any
 
     def __str__(self) -> str:
-        return f"{self.relation} = {self.value}, not 0"
+        return f"{self.relation} = {shorten(self.value)}, not 0"
 
 
 @cache

@@ -15,7 +15,9 @@ _RATIONAL = re.compile(r"\s*([-+]?[0-9]+)\s*(?:/\s*([0-9]+)\s*)?")
 
 def shorten(value: object, width: int = 40) -> str:
     """A value as it stands in an error message: at most ``width`` characters."""
-    if isinstance(value, int | Fraction) and not isinstance(value, bool):
+    if value is None or isinstance(value, bool):
+        return {None: "null", True: "true", False: "false"}[value]  # as JSON writes them
+    if isinstance(value, int | Fraction):
         value = fmpq(value.numerator, value.denominator)  # str() refuses many digits, flint not
     text = repr(value) if isinstance(value, str) else str(value)
     return text if len(text) <= width else f"{text[: width - 1]}…"
@@ -30,7 +32,7 @@ def parse_rational(value: Any) -> fmpq:
         For anything else: floats, booleans, NaN, other strings, a zero denominator.
     """
     if isinstance(value, bool):
-        raise EntryError(f"entry {str(value).lower()} is a boolean; write 1 or 0")
+        raise EntryError(f"entry {shorten(value)} is a boolean; write 1 or 0")
     if isinstance(value, float):
         raise EntryError(f"entry {value!r} is a float; write an integer or a fraction 'a/b'")
     if isinstance(value, int | fmpz):

@@ -14,6 +14,7 @@ from trivector.errors import (
 from trivector.exterior.basis import DIMENSIONS, dimension_from_size
 from trivector.exterior.plucker import Violation, decompose
 from trivector.exterior.products import minors
+from trivector.fields.entries import shorten
 from trivector.fields.linear import Rows, dependencies, meet_rows, row_space
 from trivector.fields.protocol import Field
 
@@ -188,7 +189,7 @@ def describe_dependency(field: Field, index: int, coefficients: Sequence[Any]) -
     for j, value in enumerate(coefficients):
         if not value:
             continue
-        entry = str(field.format(value))
+        entry = shorten(field.format(value)).strip("'")
         sign, size = ("−", entry[1:]) if entry.startswith("-") else ("+", entry)
         text += f" {sign} " if text else ("−" if sign == "−" else "")
         text += ("" if size == "1" else f"{size}·") + f"row {j}"
