@@ -339,7 +339,7 @@ def test_the_integers_modulo_a_prime_power_never_pass_for_a_field(q: int, p: int
 
 @pytest.mark.parametrize("p", [4, 6, 9, 15, 1, 0, -3, 2**63, 2**63 + 29, 561, 2**61 - 3])
 def test_prime_field_takes_primes_only(p: int) -> None:  # 561 is a Carmichael number
-    with pytest.raises(FieldError, match=r"use a (prime|smaller one)$"):
+    with pytest.raises(FieldError, match=r"use a (prime|smaller one)$|write \"Q\" for"):
         prime_field(p)
 
 

@@ -35,6 +35,8 @@ def read_text(path: str | Path) -> str:
         raise DocumentError([f"{name}: a directory, not a file; name a file in it"]) from None
     except (gzip.BadGzipFile, zlib.error, EOFError):
         raise DocumentError([f"{name}: not a complete gzip file; compress it again"]) from None
+    except DocumentError:
+        raise
     except (OSError, ValueError) as error:
         reason = getattr(error, "strerror", None) or str(error)
         raise DocumentError([f"{name}: cannot be read ({reason})"]) from None
@@ -51,7 +53,7 @@ def read_text(path: str | Path) -> str:
 def _read_bytes(name: str) -> bytes:
     if name == "-":
         if sys.stdin is None:
-            raise OSError("standard input is closed")
+            raise DocumentError(["standard input: closed; give a file"])
         return sys.stdin.buffer.read(LARGEST + 1)
     if name.endswith(".gz"):
         with gzip.open(name, "rb") as file:

@@ -63,6 +63,8 @@ def _from_keys(spec: dict[str, Any]) -> Field:
         )
     if "modulus" not in spec:
         return prime_field(characteristic)
+    if not isinstance(spec["modulus"], str):
+        raise FieldError(f'modulus {shorten(spec["modulus"])} must be a text such as "x^2+1"')
     if characteristic == 0:
         return number_field(spec["modulus"])
     field: Field = finite_field_modulo(characteristic, spec["modulus"])

@@ -196,16 +196,19 @@ class Decision:
         lengths: Sequence[int],
     ) -> SectionReport:
         length = polynomial.degree
-        common: dict[str, Any] = {
-            "projective_dimension": 0,
-            "infinite": False,
-            "multiplicities": tuple(lengths),
-        }
         exact, limit = self._exact_hilbert(found, polynomial, reduction)
         if exact is None:
-            return self._report(**common, limit=limit)
+            # Finite modulo a prime is finite; but it may be empty over the field.
+            return self._report(
+                projective_dimension=0 if self.planes else None,
+                infinite=False,
+                multiplicities=tuple(lengths),
+                limit=limit,
+            )
         return self._report(
-            **common,
+            projective_dimension=0,
+            infinite=False,
+            multiplicities=tuple(lengths),
             degree=length,
             hilbert_function=exact,
             hilbert_polynomial=polynomial,

@@ -189,7 +189,7 @@ def describe_dependency(field: Field, index: int, coefficients: Sequence[Any]) -
     for j, value in enumerate(coefficients):
         if not value:
             continue
-        entry = shorten(field.format(value)).strip("'")
+        entry = shorten(value)
         sign, size = ("−", entry[1:]) if entry.startswith("-") else ("+", entry)
         text += f" {sign} " if text else ("−" if sign == "−" else "")
         text += ("" if size == "1" else f"{size}·") + f"row {j}"
