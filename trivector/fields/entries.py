@@ -2,6 +2,7 @@
 
 import re
 from fractions import Fraction
+from itertools import islice
 from typing import Any
 
 from flint import fmpq, fmpz
@@ -15,12 +16,21 @@ _RATIONAL = re.compile(r"\s*([-+]?[0-9]+)\s*(?:/\s*([0-9]+)\s*)?")
 
 def shorten(value: object, width: int = 40) -> str:
     """A value as it stands in an error message: at most ``width`` characters."""
+    text = _text(value, width)
+    return text if len(text) <= width else f"{text[: width - 1]}…"
+
+
+def _text(value: object, width: int) -> str:
     if value is None or isinstance(value, bool):
         return {None: "null", True: "true", False: "false"}[value]  # as JSON writes them
     if isinstance(value, int | Fraction):
         value = fmpq(value.numerator, value.denominator)  # str() refuses many digits, flint not
-    text = repr(value) if isinstance(value, str) else str(value)
-    return text if len(text) <= width else f"{text[: width - 1]}…"
+    if isinstance(value, list):
+        return f"[{', '.join(_text(x, width) for x in value[:width])}]"
+    if isinstance(value, dict):
+        items = islice(value.items(), width)
+        return f"{{{', '.join(f'{_text(k, width)}: {_text(v, width)}' for k, v in items)}}}"
+    return repr(value) if isinstance(value, str) else str(value)
 
 
 def parse_rational(value: Any) -> fmpq:
