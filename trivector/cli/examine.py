@@ -4,7 +4,15 @@ import argparse
 import sys
 from typing import Any
 
-from trivector.cli.options import add_common, add_limits, limits_from, progress, write_answer
+from trivector.cli.options import (
+    add_certificate,
+    add_common,
+    add_limits,
+    limits_from,
+    progress,
+    write_answer,
+    write_certificate,
+)
 from trivector.errors import UsageError
 
 __all__ = ["add_parser", "run"]
@@ -21,6 +29,7 @@ def add_parser(verbs: Any) -> None:
     )
     parser.add_argument("file", metavar="FILE", help="planes, as JSON or plain text; - for stdin")
     add_common(parser)
+    add_certificate(parser)
     add_limits(parser)
     parser.set_defaults(run=run)
 
@@ -44,5 +53,11 @@ def run(arguments: argparse.Namespace) -> int:
 
         return examination_report(examination)
 
+    def certificate() -> dict[str, Any]:
+        from trivector.certificates import certify_examination
+
+        return certify_examination(examination, limits=limits_from(arguments))
+
     write_answer(arguments, examination.to_json(), report)
+    write_certificate(arguments, certificate)
     return examination.exit_code

@@ -10,6 +10,7 @@ from typing import Any, TextIO
 from trivector.errors import UsageError
 
 __all__ = [
+    "add_certificate",
     "add_common",
     "add_limits",
     "add_sweep",
@@ -19,6 +20,7 @@ __all__ = [
     "print_report",
     "progress",
     "write_answer",
+    "write_certificate",
 ]
 
 
@@ -133,6 +135,29 @@ def add_sweep(parser: argparse.ArgumentParser) -> None:
         metavar="N",
         help="points that a sweep over F_q may examine (default 2·10^8)",
     )
+
+
+def add_certificate(parser: argparse.ArgumentParser) -> None:
+    """A certificate beside the answer."""
+    parser.add_argument(
+        "--certificate",
+        metavar="FILE",
+        help="also write a certificate, which `recheck` and a lone checker can check again",
+    )
+
+
+def write_certificate(arguments: argparse.Namespace, make: Callable[[], dict[str, Any]]) -> None:
+    """The certificate to the file of --certificate, when it was asked for."""
+    if arguments.certificate is None:
+        return
+    text = json.dumps(make(), ensure_ascii=False, indent=None, separators=(",", ":"))
+    try:
+        with open(arguments.certificate, "w", encoding="utf-8") as file:
+            file.write(text + "\n")
+    except OSError as error:
+        raise UsageError(
+            f"{arguments.certificate}: cannot be written ({error.strerror}); name another file"
+        ) from None
 
 
 def positive(text: str) -> int:

@@ -8,6 +8,7 @@ from collections.abc import Iterator
 from typing import Any, TextIO
 
 from trivector.cli.options import (
+    add_certificate,
     add_common,
     add_limits,
     add_sweep,
@@ -15,6 +16,7 @@ from trivector.cli.options import (
     open_output,
     print_report,
     progress,
+    write_certificate,
 )
 from trivector.cli.subspaces import read_subspace
 
@@ -37,6 +39,7 @@ def add_parser(verbs: Any) -> None:
     )
     parser.add_argument("file", metavar="FILE", help="a subspace or planes; - for stdin")
     add_common(parser)
+    add_certificate(parser)
     add_limits(parser)
     add_sweep(parser)
     parser.set_defaults(run=run)
@@ -68,6 +71,13 @@ def run(arguments: argparse.Namespace) -> int:
         planes = iter_rational_planes(
             subspace, jobs=arguments.jobs, max_points=arguments.max_points, on_progress=note
         )
+
+    def certificate() -> dict[str, Any]:
+        from trivector.certificates import certify_section
+
+        return certify_section(report, title=title, seed=arguments.seed)
+
+    write_certificate(arguments, certificate)
     with open_output(arguments) as file:
         answer = _Answer(file, as_json=arguments.json)
         answer.begin(arguments, report, title, planes is not None)

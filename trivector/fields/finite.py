@@ -391,6 +391,12 @@ class ExtensionField:
     def to_spec(self) -> dict[str, Any]:
         return {"characteristic": self.characteristic, "modulus": self.modulus_text}
 
+    def definition(self) -> dict[str, Any]:
+        return {"characteristic": self.characteristic, "modulus": list(self.modulus)}
+
+    def numbers(self, value: FiniteElement) -> list[int]:
+        return self.coefficients(value)
+
     def __hash__(self) -> int:
         return hash((self.characteristic, self.modulus))
 

@@ -14,6 +14,7 @@ from trivector.fields.matrices import ScalarMatrix
 from trivector.fields.polynomials import format_polynomial, parse_modulus, parse_polynomial
 from trivector.fields.prime import PrimeField, prime_field
 from trivector.fields.protocol import ResidueField
+from trivector.fields.rationals import QQ
 
 __all__ = ["NumberElement", "NumberField", "PlaceReduction", "number_field"]
 
@@ -118,6 +119,10 @@ class PlaceReduction:
             raise BadReductionError(
                 f"a denominator is divisible by {self.prime}; use another prime"
             ) from error
+
+    @property
+    def place(self) -> dict[str, int]:
+        return {"prime": self.prime, "root": self.root}
 
     def _reduce(self, value: NumberElement) -> nmod:
         total = nmod(0, self.prime)
@@ -280,6 +285,12 @@ class NumberField:
 
     def to_spec(self) -> dict[str, str]:
         return {"modulus": self.modulus_text}
+
+    def definition(self) -> dict[str, Any]:
+        return {"modulus": [QQ.format(c) for c in self.modulus]}
+
+    def numbers(self, value: NumberElement) -> list[int | str]:
+        return [QQ.format(c) for c in self.coefficients(value)]
 
     def __repr__(self) -> str:
         return self.name

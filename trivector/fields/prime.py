@@ -35,6 +35,10 @@ class Identity:
     def rows(self, rows: Iterable[Sequence[Any]]) -> list[list[Any]]:
         return [list(row) for row in rows]
 
+    @property
+    def place(self) -> None:
+        return None
+
 
 @dataclass(frozen=True)
 class PrimeField:
@@ -163,6 +167,12 @@ class PrimeField:
 
     def to_spec(self) -> str:
         return self.name
+
+    def definition(self) -> dict[str, Any]:
+        return {"characteristic": self.order}
+
+    def numbers(self, value: nmod) -> int:
+        return int(value)
 
     def __repr__(self) -> str:
         return self.name

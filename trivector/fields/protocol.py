@@ -65,6 +65,11 @@ class Reduction(Protocol):
         """Map rows of scalars; `BadReductionError` if one is not integral."""
         ...
 
+    @property
+    def place(self) -> dict[str, int] | None:
+        """As a certificate names it: prime, and root of the modulus; None for the identity."""
+        ...
+
 
 @dataclass(frozen=True)
 class ResidueField:
@@ -181,6 +186,14 @@ class Field(Protocol):
 
     def to_spec(self) -> str | dict[str, Any]:
         """What stands under ``"field"`` in a document."""
+        ...
+
+    def definition(self) -> dict[str, Any]:
+        """What stands under ``"field"`` in a certificate: characteristic and modulus as numbers."""
+        ...
+
+    def numbers(self, value: Any) -> Any:
+        """An element in a certificate: an int, ``"p/q"``, or the list of its coefficients in a."""
         ...
 
 

@@ -43,6 +43,10 @@ class ModularReduction:
                 f"a denominator is divisible by {self.prime}; use another prime"
             ) from error
 
+    @property
+    def place(self) -> dict[str, int]:
+        return {"prime": self.prime}
+
 
 @dataclass(frozen=True)
 class Rationals:
@@ -138,6 +142,12 @@ class Rationals:
 
     def to_spec(self) -> str:
         return self.name
+
+    def definition(self) -> dict[str, Any]:
+        return {}
+
+    def numbers(self, value: Any) -> int | str:
+        return self.format(value)
 
     def __repr__(self) -> str:
         return self.name

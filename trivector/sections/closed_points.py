@@ -6,7 +6,7 @@ from random import Random
 from typing import Any
 
 from trivector.exterior.plucker import Violation, decompose
-from trivector.fields.linear import row_space
+from trivector.fields.linear import Rows, row_space
 from trivector.fields.protocol import Field
 from trivector.sections.finite_points import SchemePoint, scheme_points
 from trivector.sections.graded import QuadricAlgebra
@@ -127,16 +127,18 @@ def _closed_point(
     """The plane over k(θ); its decomposability is checked there."""
     degree = len(modulus) - 1
     residue = field.residue_field(modulus)
+    relative = {"modulus": tuple(modulus), "plucker": tuple(map(tuple, plucker))}
     if residue is None:
-        return ClosedPoint(degree, multiplicity, None, None)
+        return ClosedPoint(degree, multiplicity, None, None, **relative)
     extension = residue.field
     vector = [residue.value(entry) for entry in plucker]
     rows = decompose(vector, n, extension.zero)
     if isinstance(rows, Violation):
         raise AssertionError(f"a point of the section violates {rows}")
+    basis: Rows = tuple(map(tuple, rows))
     if extension.order is not None or degree <= _LARGEST_ECHELON_DEGREE:
-        return ClosedPoint(degree, multiplicity, extension, row_space(extension, rows, n))
-    return ClosedPoint(degree, multiplicity, extension, tuple(map(tuple, rows)))
+        basis = row_space(extension, rows, n)
+    return ClosedPoint(degree, multiplicity, extension, basis, **relative)
 
 
 def _local_length_at(subspace: Subspace, point: ClosedPoint) -> int | None:

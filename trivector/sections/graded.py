@@ -167,6 +167,11 @@ class QuadricAlgebra:
             relation[code] = -value if present is None else present - value
         return {code: value for code, value in relation.items() if value}
 
+    def first_factor(self, code: int) -> tuple[int, int]:
+        """The first variable of a packed monomial, and the rest of it."""
+        index = ((code & -code).bit_length() - 1) // _BITS
+        return index, code - self._units[index]
+
     def evaluate(self, degree: int, points: Sequence[Sequence[Any]]) -> list[list[Any]]:
         """The basis monomials of R_degree at points of k^m: one row for each point.
 

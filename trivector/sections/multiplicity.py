@@ -10,7 +10,7 @@ from trivector.fields.protocol import Field
 from trivector.sections.hilbert import grassmannian_degree
 from trivector.subspaces import Plane, Subspace
 
-__all__ = ["is_reduced_at", "local_length"]
+__all__ = ["is_reduced_at", "local_algebra", "local_length"]
 
 Polynomial = dict[tuple[int, ...], Any]
 """Coefficients by sorted tuples of variable indices: (0, 0, 4) is x_0²·x_4."""
@@ -70,6 +70,39 @@ def local_length(section: Subspace, plane: Plane) -> int | None:
         if system.length > bound:
             return None
     return system.length
+
+
+def local_algebra(section: Subspace, plane: Plane) -> list[tuple[int, int, list[list[Any]]]] | None:
+    """The local ring of the section at a plane, as matrices.
+
+    Returns
+    -------
+    list of (i, column, matrix), or None
+        The coordinate x of the chart in which row i of the plane (in reduced
+        echelon form) is w_i + x·e_column, as the matrix by which it multiplies
+        in the basis dual to the inverse system: strictly lower triangular
+        matrices of the size of `local_length` that commute; 1 is the first
+        basis vector. None where `local_length` is None.
+    """
+    units, width = _complement(plane), section.n - 3
+    system = _InverseSystem(section.field, 3 * width, _chart_equations(section, plane))
+    while system.grow():
+        if system.length > grassmannian_degree(section.n):
+            return None
+    size, zero = system.length, section.field.zero
+    columns = [next(c for c, x in enumerate(unit) if x) for unit in units]
+    return [
+        (
+            i,
+            column,
+            [
+                row + [zero] * (size - len(row))
+                for row in (list(shift[i * width + j]) for shift in system.shifts)
+            ],
+        )
+        for i in range(3)
+        for j, column in enumerate(columns)
+    ]
 
 
 def _complement(plane: Plane) -> list[list[Any]]:

@@ -1,5 +1,6 @@
 """What has been proved of a section, as data."""
 
+import dataclasses
 from dataclasses import dataclass
 from typing import Any
 
@@ -26,12 +27,20 @@ class ClosedPoint:
     rows : tuple of rows or None
         A basis of W over the residue field; in reduced echelon form unless
         that would be very much longer (degree above 4 over ℚ).
+    modulus : tuple or None
+        The monic irreducible polynomial over the field k of the data whose
+        root θ generates the residue field, constant first; None for degree 1
+        when the plane was known.
+    plucker : tuple of tuples or None
+        The Plücker vector over k(θ), each entry as coefficients of powers of θ.
     """
 
     degree: int
     multiplicity: int
     residue_field: Field | None
     rows: Rows | None
+    modulus: tuple[Any, ...] | None = dataclasses.field(default=None, compare=False, repr=False)
+    plucker: Rows | None = dataclasses.field(default=None, compare=False, repr=False)
 
     @property
     def plane(self) -> Plane | None:
