@@ -3,7 +3,7 @@
 import hashlib
 import json
 from collections.abc import Sequence
-from itertools import combinations_with_replacement, islice
+from itertools import accumulate, combinations_with_replacement, islice
 from typing import Any
 
 from trivector import __version__
@@ -27,6 +27,7 @@ FORMAT = 1
 
 Claim = dict[str, Any]
 _MOST_PLACES = 12
+_HIGHEST_DEGREE = 6
 
 
 def certify_examination(
@@ -207,7 +208,7 @@ def _section_claim(
 ) -> tuple[Claim | None, str]:
     """All planes, or infinitely many; or None and the reason."""
     if report.infinite:
-        claim = _infinite_claim(report, limits)
+        claim = _infinite_claim(report.subspace, limits)
         return claim, "" if claim else "no short proof that it is infinite within the limits"
     if report.points is None:
         return None, report.limit or "not all of its planes are known over their residue fields"
@@ -249,41 +250,33 @@ def _all_planes_claim(
     return None
 
 
-def _infinite_claim(report: SectionReport, limits: Limits) -> Claim | None:
-    space = report.subspace
+def _infinite_claim(space: Subspace, limits: Limits) -> Claim | None:
     if expected_dimension(space.n, space.dimension) >= 1:
         return {"claim": "infinite", "by": "dimension"}
-    h, hilbert = grassmannian_h_vector(space.n), report.hilbert_function or ()
-    for degree, value in enumerate(hilbert):
-        bound = sum(h[: degree + 1])
-        if degree >= 2 and value > bound:
-            functionals = _functionals(space, degree, bound + 1, limits)
-            if functionals is None:
-                return None
-            return {
-                "claim": "infinite",
-                "by": "functionals",
-                "degree": degree,
-                "functionals": _numbers(space.field, functionals),
-            }
-    return None
+    quadrics = restricted_quadrics(space.rows, space.n, space.field.zero)
+    algebra = QuadricAlgebra(space.field, space.dimension, quadrics)
+    bounds = list(accumulate(grassmannian_h_vector(space.n)))
+    while algebra.hilbert[-1] <= (bound := bounds[min(algebra.top, len(bounds) - 1)]):
+        if algebra.next_shape()[1] > limits.columns(space.field) or algebra.top >= _HIGHEST_DEGREE:
+            return None
+        algebra.extend()
+    return {
+        "claim": "infinite",
+        "by": "functionals",
+        "degree": algebra.top,
+        "functionals": _numbers(space.field, _functionals(algebra, bound + 1)),
+    }
 
 
-def _functionals(space: Subspace, degree: int, count: int, limits: Limits) -> list[Any] | None:
-    """Functionals on forms of a degree that vanish on the ideal, in the basis of echelon rows.
+def _functionals(algebra: QuadricAlgebra, count: int) -> list[list[Any]]:
+    """So many functionals on forms of the top degree that vanish on the ideal.
 
     The coefficients of the normal form of a monomial at the first standard
     monomials; values in the order of `combinations_with_replacement`.
     """
-    field, size = space.field, space.dimension
-    quadrics = restricted_quadrics(space.rows, space.n, field.zero)
-    algebra = QuadricAlgebra(field, size, quadrics)
-    while algebra.top < degree:
-        if algebra.next_shape()[1] > limits.columns(field):
-            return None
-        algebra.extend()
+    field, degree = algebra.field, algebra.top
     values = []
-    for monomial in combinations_with_replacement(range(size), degree):
+    for monomial in combinations_with_replacement(range(algebra.size), degree):
         form = {0: field.one}
         for step, index in enumerate(monomial):
             product: dict[int, Any] = {}

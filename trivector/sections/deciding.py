@@ -2,7 +2,7 @@
 
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
-from itertools import islice
+from itertools import accumulate, islice
 from random import Random
 from typing import Any
 
@@ -15,7 +15,11 @@ from trivector.sections.closed_points import (
     rational_planes,
 )
 from trivector.sections.graded import QuadricAlgebra
-from trivector.sections.hilbert import HilbertPolynomial, grassmannian_degree
+from trivector.sections.hilbert import (
+    HilbertPolynomial,
+    grassmannian_degree,
+    grassmannian_h_vector,
+)
 from trivector.sections.multiplicity import local_length
 from trivector.sections.quadrics import restricted_quadrics
 from trivector.sections.section_report import ClosedPoint, SectionReport
@@ -81,7 +85,7 @@ class Decision:
             return self._complete(found, found.complete_degree, reduction)
         polynomial = found.polynomial
         if polynomial is None:
-            return self._undecided(found)
+            return self._undecided(found, reduction)
         if polynomial.dimension == -1:
             return self._empty(found, polynomial, reduction)
         if polynomial.dimension == 0:
@@ -224,7 +228,7 @@ class Decision:
     ) -> SectionReport:
         exact, limit = self._exact_hilbert(found, polynomial, reduction)
         if exact is None:
-            return replace(self._undecided(found), limit=limit)
+            return replace(self._undecided(found, reduction), limit=limit)
         dimension, degree = polynomial.dimension, polynomial.degree
         return self._infinite_report(
             projective_dimension=dimension,
@@ -246,7 +250,7 @@ class Decision:
             **found,
         )
 
-    def _undecided(self, found: Study) -> SectionReport:
+    def _undecided(self, found: Study, reduction: Reduction) -> SectionReport:
         """What can still be said when a limit was hit: infinite for another reason, perhaps."""
         space = self.subspace
         expected = expected_dimension(space.n, space.dimension)
@@ -256,6 +260,12 @@ class Decision:
                 method=f"a linear space of dimension {space.dimension} meets G(3,{space.n}) in "
                 f"dimension ≥ {expected} (projective dimension theorem)",
             )
+        degree = self._excessive_degree(found, reduction)
+        if degree is not None:
+            return self._infinite_report(
+                limit=found.limit,
+                method=f"H({degree}) over {space.field.name} is larger than for any finite section",
+            )
         for i, plane in enumerate(self.planes):
             if local_length(space, plane) is None:
                 return self._infinite_report(
@@ -264,6 +274,25 @@ class Decision:
                     f"{grassmannian_degree(space.n)}, more than any finite section has",
                 )
         return self._report(limit=found.limit)
+
+    def _excessive_degree(self, found: Study, reduction: Reduction) -> int | None:
+        """A degree in which H, over the field of L itself, proves the section infinite.
+
+        Were Z finite, dim G general forms among the equations of L would cut
+        G = G(3,n) in a finite scheme (over the closure). They are a regular
+        sequence in the Cohen–Macaulay coordinate ring of G, so that scheme
+        has H(d) = h_0 + … + h_d, h the h-vector of G; and Z lies in it.
+        """
+        bounds = list(accumulate(grassmannian_h_vector(self.subspace.n)))
+        for degree, value in enumerate(found.hilbert):
+            bound = bounds[min(degree, len(bounds) - 1)]
+            if value > bound:
+                if reduction.exact:
+                    return degree
+                algebra, _ = self._exact_algebra(self._small_rows(), degree)
+                if algebra is not None and algebra.hilbert[-1] > bound:
+                    return degree
+        return None
 
     def _exactly(
         self, found: Study, polynomial: HilbertPolynomial, reduction: Reduction, what: str

@@ -85,7 +85,8 @@ class LinearSection:
         local ring of p, the ranks in the proof of regularity are the same
         over K, and H is the same in all degrees ≥ d. Or from the dimension
         theorem: dim L ≥ 12 (n = 6) makes Z infinite, dim L = 11 makes it
-        nonempty, and of length 42 if finite.
+        nonempty, and of length 42 if finite. Or because H(d) over K exceeds
+        1, 11, 31, 41, 42, 42, … (n = 6), the most that a finite section has.
         """
         planes = self._distinct(known)
         if self.subspace.dimension == 0:
