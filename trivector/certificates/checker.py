@@ -49,7 +49,7 @@ from typing import Any
 
 FORMAT = 1
 LARGEST_FILE = 64 * 2**20
-MOST_WORK = 2 * 10**10
+MOST_WORK = 5 * 10**9
 CLAIMS = ("incidence", "span", "decomposable", "all planes", "infinite", "complete")
 MALFORMED = (AttributeError, LookupError, OSError, RecursionError, TypeError, ValueError)
 H_VECTOR = {6: (1, 10, 20, 10, 1), 7: (1, 22, 113, 190, 113, 22, 1)}
@@ -464,7 +464,7 @@ class Check:
         for i, data in enumerate(items):
             where = f"points[{i}]"
             point = self.point(self.field, data, where)
-            self.spend((100 * point.size**3 + 10**4) * point.ring.weight)
+            self.spend((point.size**3 * len(point.nilpotents) ** 2 + 10**4) * point.ring.weight)
             if point.f:
                 self.irreducible(point.f, data["irreducible"], where)
             holds(point.commutes(), f"{where}: the nilpotent matrices do not commute")
