@@ -1,0 +1,209 @@
+"""Certificates of random and of known answers: each is accepted and says what the answer said."""
+
+import json
+from collections.abc import Callable, Sequence
+from importlib import resources
+from random import Random
+
+import examples
+import jsonschema
+import pytest
+from forging import Certificate, claim_of, sealed, verdicts
+
+from trivector import Configuration, LinearSection, Plane, Subspace, prime_field
+from trivector.certificates import (
+    certify_examination,
+    certify_section,
+    certify_trivectors,
+)
+from trivector.configurations import Examination
+from trivector.exterior import Trivector
+from trivector.fields import QQ, Field, field_from_spec
+from trivector.sections import Limits, SectionReport
+
+F2, F3, F7, F11 = (prime_field(p) for p in (2, 3, 7, 11))
+GAUSS = field_from_spec({"modulus": "x^2+1"})
+FIELDS: dict[str, Field] = {
+    "Q": QQ,
+    "F_2": F2,
+    "F_3": F3,
+    "F_4": field_from_spec("F_4"),
+    "F_7": F7,
+    "F_9": field_from_spec("F_9"),
+    "F_2305843009213693951": prime_field(examples.LARGE_PRIME),
+    "Q(i)": GAUSS,
+}
+# So that the engine says "undecided" early of what is slow over F_9 and number fields.
+LIMITS = Limits(max_columns=320, max_primes=2, max_lift_primes=20, max_points=20_000)
+
+SCHEMA = json.loads(
+    resources.files("trivector.certificates").joinpath("schema.json").read_text("utf-8")
+)
+VALIDATOR = jsonschema.Draft202012Validator(SCHEMA)
+
+
+def confirmed(made: Certificate) -> Certificate:
+    """After a round trip: valid for the schema, hashed canonically, every claim accepted."""
+    again = json.loads(json.dumps(made))
+    assert again == made
+    VALIDATOR.validate(again)
+    assert sealed(again)["sha256"] == again["sha256"]
+    for name, verdict, words in verdicts(again):
+        assert verdict, (name, words)
+    return dict(again)
+
+
+def names(made: Certificate) -> list[str]:
+    return [claim["claim"] for claim in made["claims"]]
+
+
+def compare_section(made: Certificate, report: SectionReport) -> None:
+    """The claim about the section and the report agree; there is one unless a reason is given."""
+    if "all planes" in names(made):
+        claim = claim_of(made, "all planes")
+        assert report.points is not None
+        assert report.infinite is False
+        assert claim["length"] == report.degree
+        assert claim["planes_over_closure"] == report.planes_over_closure
+        assert claim["planes_over_base"] == len(report.planes or ())
+        assert claim["reduced"] is report.reduced
+        found = sorted((p.degree, p.multiplicity) for p in report.points)
+        listed = sorted(
+            (max(1, len(p.get("modulus", [])) - 1), p.get("multiplicity", 1))
+            for p in claim["points"]
+        )
+        assert found == listed
+    elif "infinite" in names(made):
+        assert report.infinite is True
+    else:
+        assert made["uncertified"]
+
+
+def certified(planes: Sequence[Plane], limits: Limits = LIMITS) -> Certificate:
+    examination = Configuration(tuple(planes)).examine(limits=limits)
+    return certified_examination(examination, limits)
+
+
+def certified_examination(examination: Examination, limits: Limits = LIMITS) -> Certificate:
+    made = confirmed(certify_examination(examination, limits=limits))
+    incidence, span = claim_of(made, "incidence"), claim_of(made, "span")
+    assert incidence["pairs"] == examination.pairs.to_json()
+    assert incidence["disjoint_pairs"] == [list(pair) for pair in examination.disjoint_pairs]
+    assert span["dimension"] == examination.span.dimension
+    assert span.get("lagrangian") is examination.lagrangian
+    assert span.get("isotropic") is examination.isotropic
+    assert span.get("totally_singular") is examination.totally_singular
+    compare_section(made, examination.section)
+    if "complete" in names(made):
+        claim = claim_of(made, "complete")
+        assert claim["over_closure"] is examination.complete_over_closure
+        assert claim["over_base"] in (None, examination.complete_over_base)
+    else:
+        assert not examination.pairwise_incident or made["uncertified"]
+    return made
+
+
+def certified_section(
+    space: Subspace, known: Sequence[Plane] = (), limits: Limits = LIMITS
+) -> Certificate:
+    report = LinearSection(space).examine(list(dict.fromkeys(known)), limits=limits)
+    made = confirmed(certify_section(report, limits=limits))
+    assert claim_of(made, "span")["dimension"] == space.dimension
+    compare_section(made, report)
+    return made
+
+
+# Random examples
+
+
+def incident(field: Field, rng: Random) -> Certificate:
+    planes = examples.random_incident_planes(field, rng.randint(2, 4), rng)
+    return certified(planes)
+
+
+def any_planes(field: Field, rng: Random) -> Certificate:
+    n, count = rng.choice((6, 6, 7)), rng.randint(1, 5)
+    planes = [examples.random_plane(field, n, rng) for _ in range(count)]
+    planes += rng.choice(([], planes[:1]))
+    return certified(planes)
+
+
+def in_a_moved_family(field: Field, rng: Random) -> Certificate:
+    family, g = rng.choice(examples.families()), examples.random_invertible(field, 6, rng)
+    members = [family.random_plane(field, rng) for _ in range(rng.randint(2, 6))]
+    return certified([examples.image(field, g, plane) for plane in members])
+
+
+def some_of_the_twenty(field: Field, rng: Random) -> Certificate:
+    planes = list(dict.fromkeys(examples.over(field, examples.twenty_planes())))
+    rng.shuffle(planes)
+    g = examples.random_invertible(field, 6, rng)
+    kept = planes[: max(2, len(planes) - rng.choice((0, 1, 3)))]
+    return certified([examples.image(field, g, p) for p in kept])
+
+
+def seven_moved(field: Field, rng: Random) -> Certificate:
+    g = examples.random_invertible(field, 7, rng)
+    planes = examples.over(field, examples.seven_planes())[: rng.choice((6, 7, 7))]
+    return certified([examples.image(field, g, p) for p in planes])
+
+
+def planted(field: Field, rng: Random) -> Certificate:
+    dimension = rng.randint(6, 12)
+    planes = [examples.random_plane(field, 6, rng) for _ in range(rng.randint(0, 5))]
+    rows = [list(plane.plucker) for plane in planes]
+    rows += examples.random_rows(field, dimension - len(rows), 20, rng)
+    return certified_section(Subspace.span(field, 6, rows), planes)
+
+
+def lagrangian(field: Field, rng: Random) -> Certificate:
+    planes = examples.random_incident_planes(field, rng.randint(2, 4), rng)
+    return certified_section(examples.lagrangian_through(field, planes, rng), planes)
+
+
+def fat(field: Field, rng: Random) -> Certificate:
+    orders = [rng.randint(0, 2) for _ in range(rng.randint(1, 3))]
+    n = rng.choice((6, 6, 7))
+    space, planes = examples.fat_space(field, orders, rng, n=n, others=rng.randint(0, 2))
+    return certified_section(space, planes)
+
+
+def trivectors(field: Field, rng: Random) -> Certificate:
+    n = rng.choice((6, 7))
+    size = {6: 20, 7: 35}[n]
+    made = [Trivector(field, examples.random_plane(field, n, rng).plucker) for _ in range(2)]
+    made += [Trivector(field, row) for row in examples.random_rows(field, 2, size, rng) if any(row)]
+    found = confirmed(certify_trivectors(made))
+    assert [c["value"] for c in found["claims"]] == [t.is_decomposable() for t in made]
+    return found
+
+
+MAKERS: list[Callable[[Field, Random], Certificate]] = [
+    incident,
+    any_planes,
+    in_a_moved_family,
+    some_of_the_twenty,
+    seven_moved,
+    planted,
+    lagrangian,
+    fat,
+    trivectors,
+]
+
+
+@pytest.mark.parametrize("name", FIELDS)
+@pytest.mark.parametrize("make", MAKERS, ids=lambda make: make.__name__)
+def test_the_certificate_of_a_random_answer_is_accepted(
+    name: str, make: Callable[[Field, Random], Certificate]
+) -> None:
+    make(FIELDS[name], Random(f"{name} {make.__name__}"))
+
+
+@pytest.mark.long
+@pytest.mark.parametrize("seed", range(5))
+@pytest.mark.parametrize("name", FIELDS)
+@pytest.mark.parametrize("make", MAKERS, ids=lambda make: make.__name__)
+def test_the_certificates_of_360_random_answers_are_accepted(
+    name: str, make: Callable[[Field, Random], Certificate], seed: int
+) -> None:
+    make(FIELDS[name], Random(f"{name} {make.__name__} {seed}"))
