@@ -22,7 +22,7 @@ from trivector.subspaces import Plane, Subspace
 Certificate = dict[str, Any]
 
 
-class Refused(Exception):
+class RefusedError(Exception):
     """The checker did not get as far as the claims."""
 
 
@@ -41,13 +41,13 @@ def verdicts(document: Certificate) -> list[tuple[str, bool, str]]:
         check = checker.Check(checker.load(json.dumps(document)))
         return list(check.run())
     except (checker.ClaimError, *checker.MALFORMED) as error:
-        raise Refused(f"{type(error).__name__}: {error}") from error
+        raise RefusedError(f"{type(error).__name__}: {error}") from error
 
 
 def accepted(document: Certificate) -> bool:
     try:
         return all(verdict for _, verdict, _ in verdicts(document))
-    except Refused:
+    except RefusedError:
         return False
 
 
@@ -55,7 +55,7 @@ def why_rejected(document: Certificate) -> str:
     """The first reason; fails if every claim was accepted."""
     try:
         reasons = [words for _, verdict, words in verdicts(document) if not verdict]
-    except Refused as refusal:
+    except RefusedError as refusal:
         return str(refusal)
     assert reasons, "a false certificate was accepted"
     return reasons[0]

@@ -45,8 +45,7 @@ from math import comb, lcm
 from random import Random
 from typing import Any
 
-FORMAT, LARGEST_FILE = 1, 16 * 2**20
-MOST_WORK = 4 * 10**9  # about a minute
+FORMAT, LARGEST_FILE, MOST_WORK = 1, 16 * 2**20, 4 * 10**9  # bytes; at most about a minute
 CLAIMS = ("incidence", "span", "decomposable", "all planes", "infinite", "complete")
 MALFORMED = (AttributeError, LookupError, OSError, RecursionError, TypeError, ValueError)
 H_VECTOR = {6: (1, 10, 20, 10, 1), 7: (1, 22, 113, 190, 113, 22, 1)}
@@ -312,10 +311,13 @@ class Check:
 
     def __init__(self, document: dict[str, Any]) -> None:
         text = canonical(document)
-        same = document["sha256"] == hashlib.sha256(text.encode()).hexdigest()
-        holds(same, "the SHA-256 does not agree with the contents")
-        self.digits = max(map(len, re.findall("[0-9]+", text)))
-        self.document, self.work, self.n = document, 0, document["dimension"]
+        digest, self.n = hashlib.sha256(text.encode()).hexdigest(), document["dimension"]
+        holds(document["sha256"] == digest, "the SHA-256 does not agree with the contents")
+        self.document, self.work, self.digits = (
+            document,
+            0,
+            max(map(len, re.findall("[0-9]+", text))),
+        )
         shape(self.n in H_VECTOR, "dimension: 6 or 7")
         self.names, data = list(combinations(range(self.n), 3)), document["field"]
         self.size, self.field = len(self.names), Field(data.get("characteristic", 0))
@@ -327,7 +329,8 @@ class Check:
         ((kind, items),) = document["subject"].items()
         shape(kind in ("planes", "basis", "trivectors"), "subject: planes, basis or trivectors")
         given, self.planes = list(enumerate(listed(items, "subject", 1, 2000))), []
-        self.spend(len(given) * self.size**2 * 4 * self.field.weight, self.size)
+        work = len(given) * self.size**2 * 12 * self.field.weight
+        self.spend(work, self.size + 10 * self.field.degree - 10)
         if kind == "planes":
             self.planes = [self.plane(x, f"planes[{i}]") for i, x in given]
             self.vectors = [self.plucker(rows) for rows in self.planes]
@@ -388,7 +391,7 @@ class Check:
             name = claim["claim"]
             shape(name in CLAIMS, f"an unknown claim; this checker knows {', '.join(CLAIMS)}")
             pairs = len(self.planes) ** 2 if name == "incidence" else 10
-            self.spend(pairs * 3000 * self.field.weight, 9)
+            self.spend(pairs * 3000 * self.field.weight)
             try:
                 yield name, True, getattr(self, "check_" + name.replace(" ", "_"))(claim)
             except ClaimError as error:
