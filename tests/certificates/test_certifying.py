@@ -254,9 +254,15 @@ def test_twenty_two_planes_over_f4_are_complete() -> None:
     assert claim_of(made, "span")["totally_singular"] is True
 
 
-@pytest.mark.parametrize("family", examples.families(), ids=str)
+SIX = [
+    pytest.param(family, id=str(family), marks=[pytest.mark.long] if family.dimension > 3 else [])
+    for family in examples.families()
+]
+
+
+@pytest.mark.parametrize("family", SIX)
 def test_the_six_families_are_infinite(family: examples.Family) -> None:
-    made = certified_section(family.lagrangian(F7))
+    made = certified_section(family.lagrangian(F7), limits=Limits())
     assert names(made) == ["span", "infinite"]
 
 

@@ -311,13 +311,10 @@ class Check:
 
     def __init__(self, document: dict[str, Any]) -> None:
         text = canonical(document)
-        digest, self.n = hashlib.sha256(text.encode()).hexdigest(), document["dimension"]
+        digest = hashlib.sha256(text.encode()).hexdigest()
         holds(document["sha256"] == digest, "the SHA-256 does not agree with the contents")
-        self.document, self.work, self.digits = (
-            document,
-            0,
-            max(map(len, re.findall("[0-9]+", text))),
-        )
+        self.digits = max(map(len, re.findall("[0-9]+", text)))
+        self.document, self.work, self.n = document, 0, document["dimension"]
         shape(self.n in H_VECTOR, "dimension: 6 or 7")
         self.names, data = list(combinations(range(self.n), 3)), document["field"]
         self.size, self.field = len(self.names), Field(data.get("characteristic", 0))
@@ -329,8 +326,7 @@ class Check:
         ((kind, items),) = document["subject"].items()
         shape(kind in ("planes", "basis", "trivectors"), "subject: planes, basis or trivectors")
         given, self.planes = list(enumerate(listed(items, "subject", 1, 2000))), []
-        work = len(given) * self.size**2 * 12 * self.field.weight
-        self.spend(work, self.size + 10 * self.field.degree - 10)
+        self.spend(len(given) * self.size**2 * 12 * self.field.weight, 10 * self.field.degree + 10)
         if kind == "planes":
             self.planes = [self.plane(x, f"planes[{i}]") for i, x in given]
             self.vectors = [self.plucker(rows) for rows in self.planes]
@@ -530,9 +526,9 @@ class Check:
             count = len(field.echelon(functionals, len(place)))
             holds(count > sum(h[: d + 1]), f"H({d}) of at least {count} proves nothing")
         by = "functionals" if "functionals" in claim else "dimension"
-        words = agree({"by": by}, claim, "degree", "functionals")
+        agree({"by": by}, claim, "degree", "functionals")
         self.infinite = True
-        return f"infinitely many planes over the closure, {words}"
+        return f"infinitely many planes over the closure, by {by}"
 
     def check_complete(self, claim: Any) -> str:
         holds(self.incident, "pairwise incidence has to be proved before")
@@ -577,8 +573,8 @@ def load(text: bytes | str) -> dict[str, Any]:
     data = json.loads(text, parse_float=str, parse_constant=str, object_pairs_hook=once)
     shape(isinstance(data, dict) and data.get("kind") == "certificate", "not a certificate")
     version = natural(data.get("format"), 10**6, "format")
-    age = "old" if version < FORMAT else "new"
-    shape(version == FORMAT, f"format {version} is too {age} for this checker of format {FORMAT}")
+    shape(version >= FORMAT, f"format {version} is too old for this checker of format {FORMAT}")
+    shape(version <= FORMAT, f"format {version} is too new for this checker of format {FORMAT}")
     return dict(data)
 
 
