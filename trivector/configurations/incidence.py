@@ -4,6 +4,7 @@ from collections import Counter
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from functools import cached_property
+from itertools import pairwise
 from typing import TYPE_CHECKING, Any
 
 from trivector.configurations.configuration import Configuration
@@ -272,15 +273,18 @@ def _evaluate(
     conditions: Any, starts: Sequence[int], flats: Sequence[Rows], field: Field, n: int
 ) -> Iterator[tuple[Rows, list[list[list[Any]]]]]:
     """For each flat and each annihilator N the matrix N·flatᵗ, by one product of matrices."""
-    values = (field.matrix([row for flat in flats for row in flat], n) * conditions.transpose())
+    values = field.matrix([row for flat in flats for row in flat], n) * conditions.transpose()
     rows, position = values.tolist(), 0
     for flat in flats:
         columns = rows[position : position + len(flat)]
         position += len(flat)
-        yield flat, [
-            [[column[r] for column in columns] for r in range(start, end)]
-            for start, end in zip(starts, starts[1:], strict=False)
-        ]
+        yield (
+            flat,
+            [
+                [[column[r] for column in columns] for r in range(start, end)]
+                for start, end in pairwise(starts)
+            ],
+        )
 
 
 def _combinations(field: Field, coefficients: Rows, flat: Rows) -> Rows:

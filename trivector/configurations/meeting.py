@@ -137,9 +137,7 @@ def _maximal_cliques(masks: Sequence[int]) -> Iterator[list[int]]:
             if not excluded and clique:
                 yield list(_bits(clique))
             continue
-        pivot = max(
-            _bits(candidates | excluded), key=lambda v: (candidates & masks[v]).bit_count()
-        )
+        pivot = max(_bits(candidates | excluded), key=lambda v: (candidates & masks[v]).bit_count())
         branches = []
         for v in _bits(candidates & ~masks[pivot]):
             branches.append((clique | 1 << v, candidates & masks[v], excluded & masks[v]))
@@ -155,9 +153,7 @@ def _bits(mask: int) -> Iterator[int]:
         mask ^= low
 
 
-def exchange_graph(
-    families: Sequence[Sequence[Plane]], *, shared: int
-) -> "networkx.Graph[int]":
+def exchange_graph(families: Sequence[Sequence[Plane]], *, shared: int) -> "networkx.Graph[int]":
     """Complete configurations, joined when they have enough planes in common.
 
     Parameters

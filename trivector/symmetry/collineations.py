@@ -264,11 +264,11 @@ def collineations(
     planes = DistinctPlanes(configuration)
     k = planes.field
     if semilinear and k.order is None:
-        raise UsageError(f"semilinear maps need a finite field, not {k.name}; leave that option out")
+        raise UsageError(f"semilinear maps need a finite field, not {k.name}; leave them out")
     distinct_of = {i: d for d, copies in enumerate(planes.copies) for i in copies}
     for i in fixing:
         if i not in distinct_of:
-            raise UsageError(f"plane {i} does not exist; indices go from 0 to {len(distinct_of) - 1}")
+            raise UsageError(f"plane {i} does not exist; the last one is {len(distinct_of) - 1}")
     fixed = list(dict.fromkeys(distinct_of[i] for i in fixing))
     base = Base(planes, fixed)
     rng = Random(seed)
@@ -277,8 +277,10 @@ def collineations(
     lengths: list[int] = []
     limited = None
     try:
-        for level in reversed(range(len(fixed), len(base.sequence))):
-            lengths.append(_extend_chain(search, level, found))
+        lengths.extend(
+            _extend_chain(search, level, found)
+            for level in reversed(range(len(fixed), len(base.sequence)))
+        )
     except LimitReachedError:
         limited = f"{limit} partial images were tried"
     generators = [

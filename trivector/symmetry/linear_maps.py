@@ -70,9 +70,7 @@ def _null_rows(field: Field, matrix: Any, ncols: int) -> list[list[Any]]:
     """A basis of the kernel, not reduced: what is needed here is only a basis."""
     reduced, rank = matrix.rref()
     rows = reduced.tolist()[:rank]
-    pivots = []
-    for row in rows:
-        pivots.append(next(j for j, x in enumerate(row) if x))
+    pivots = [next(j for j, x in enumerate(row) if x) for row in rows]
     zero, one = field.zero, field.one
     basis = []
     pivot_set = set(pivots)
@@ -172,7 +170,7 @@ def count_invertible(field: Any, space: Any, n: int, limit: int) -> int | None:
     for factors in iter_projective(elements, dimension):
         row = (field.matrix([list(factors)], dimension) * basis).tolist()[0]
         total += bool(_square(field, row, n).det())
-    return total * (field.order - 1)
+    return total * int(field.order - 1)
 
 
 def iter_projective(elements: Sequence[Any], dimension: int) -> Iterator[tuple[Any, ...]]:

@@ -124,9 +124,7 @@ class Base:
                 break
             sequence.append(best[1])
             space = system.restrict(space, best[1], best[1])
-        self.exact = (
-            system if self.reduction.exact else MapSystem(field, n, rows, rows)
-        )
+        self.exact = system if self.reduction.exact else MapSystem(field, n, rows, rows)
         self.spaces = [self.exact.everything]
         for i in sequence:
             self.spaces.append(self.exact.restrict(self.spaces[-1], i, i))
@@ -213,7 +211,10 @@ class Search:
         if self.steps > self._limit:
             raise LimitReachedError
         smaller = self._fast.restrict(space, self.base.sequence[level], image)
-        if smaller is None or smaller.nrows() < self.base.dimensions[level + 1]:
+        wanted = self.base.dimensions[level + 1]
+        if smaller is None or smaller.nrows() < wanted:
+            return None
+        if self._exact is self._fast and smaller.nrows() > wanted:
             return None
         marked = self.target.colours.individualise(colouring, image)
         if marked.trace != self.base.colourings[level + 1].trace:
@@ -242,16 +243,18 @@ class Search:
             if never is not False:
                 return None
             for _ in range(_UNLIKELY):
-                matrix = matrix or find_invertible(field, space, n, self._rng)
+                matrix = find_invertible(field, space, n, self._rng)
+                if matrix is not None:
+                    break
             if matrix is None:  # practically impossible; still no reason to say "no"
                 self.undecided = "no invertible map was found although one exists"
                 return None
-        all_images = []
+        all_images: list[int] = []
         for plane in self.base.planes.planes:
-            image = self.target.index.get(image_rows(field, matrix, plane.rows, n))
-            if image is None:
+            position = self.target.index.get(image_rows(field, matrix, plane.rows, n))
+            if position is None:
                 return None
-            all_images.append(image)
+            all_images.append(position)
         source, target = self.base.planes.copies, self.target.copies
         if any(len(source[i]) != len(target[j]) for i, j in enumerate(all_images)):
             return None

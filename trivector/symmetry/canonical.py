@@ -1,0 +1,426 @@
+"""A canonical representative of a configuration up to collineations."""
+
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass
+from functools import cached_property
+from typing import Any
+
+from trivector.configurations import Configuration
+from trivector.errors import UsageError
+from trivector.fields.linear import Rows, rank, row_space
+from trivector.fields.protocol import Field
+from trivector.subspaces import Plane
+from trivector.symmetry.collineations import Collineation, orbits
+from trivector.symmetry.linear_maps import canonical_matrix, iter_projective
+from trivector.symmetry.refinement import Colouring
+from trivector.symmetry.search import DistinctPlanes
+
+__all__ = ["CanonicalForm", "canonical_form"]
+
+MAX_LEAVES = 20_000
+
+
+@dataclass(frozen=True)
+class CanonicalForm:
+    """The canonical representative, and the collineation onto it.
+
+    Attributes
+    ----------
+    configuration : Configuration
+        Equal (as a tuple of planes) for two configurations exactly when they
+        are equivalent over their field.
+    collineation : Collineation
+        From the given configuration to it.
+    automorphisms : tuple of tuples of int
+        Permutations of the given planes that were found on the way; each
+        comes from a collineation.
+    leaves : int
+        How many frames were compared.
+    """
+
+    configuration: Configuration
+    collineation: Collineation
+    automorphisms: tuple[tuple[int, ...], ...]
+    leaves: int
+
+    @cached_property
+    def label(self) -> str:
+        """A digest (SHA-256) of field, n and planes: equal for equivalent configurations.
+
+        Unequal representatives with equal digests are not known to exist; to
+        exclude them compare `configuration`.
+        """
+        import hashlib
+        import json
+
+        data = [
+            self.configuration.field.to_spec(),
+            self.configuration.n,
+            [plane.to_entries() for plane in self.configuration.planes],
+        ]
+        text = json.dumps(data, sort_keys=True, separators=(",", ":"))
+        return hashlib.sha256(text.encode("utf-8")).hexdigest()
+
+
+def canonical_form(configuration: Configuration, *, limit: int = MAX_LEAVES) -> CanonicalForm:
+    """The least image of a configuration under canonical frames of its own.
+
+    Parameters
+    ----------
+    configuration : Configuration
+        Over any field; its planes in any order.
+    limit : int
+        The largest number of frames that are compared.
+
+    Returns
+    -------
+    CanonicalForm
+
+    Raises
+    ------
+    UsageError
+        If the shared points of the planes do not span what the planes span and
+        the field is infinite, or more frames than the limit are needed:
+        `compare_configurations` works without frames.
+
+    Notes
+    -----
+    A search tree over sequences of planes, each marked in the incidence graph
+    and followed by colour refinement (individualisation and refinement:
+    "Practical graph isomorphism", 1981, and "Practical graph isomorphism, II",
+    2014, arXiv 1301.1493). Points with a colour of their own come in a
+    definite order; as soon as they contain a basis of V and fix the scale of
+    each of its vectors, they are a frame, and the planes get coordinates. The
+    representative is the least of these images among the nodes with the least
+    colour traces. Equal images give automorphisms, which prune the tree. Where
+    the points do not suffice, over F_q all points of the planes are tried.
+
+    Examples
+    --------
+    >>> from trivector import Configuration, read
+    >>> planes = read("data/twenty-planes.json", field="F_7").planes
+    >>> first, second = Configuration(planes[1:]), Configuration(planes[:-1])
+    >>> canonical_form(first).label == canonical_form(second).label
+    True
+    """
+    return _Labelling(configuration, limit).result()
+
+
+@dataclass
+class _Leaf:
+    """A frame that has been tried: its path, the image, and which plane went where."""
+
+    path: tuple[int, ...]
+    invariants: tuple[Any, ...]
+    image: tuple[Any, ...]
+    order: tuple[int, ...]
+    matrix: Any
+
+
+class _Labelling:
+    """The search tree of one configuration."""
+
+    def __init__(self, configuration: Configuration, limit: int) -> None:
+        self._configuration = configuration
+        self._planes = DistinctPlanes(configuration)
+        self._field: Field = configuration.field
+        self._n = configuration.n
+        rows = [row for plane in self._planes.planes for row in plane.rows]
+        self._span = row_space(self._field, rows, self._n)
+        self._limit = limit
+        self._leaves = 0
+        self._best: _Leaf | None = None
+        self._seen: dict[tuple[Any, ...], _Leaf] = {}
+        self._automorphisms: list[tuple[int, ...]] = []
+
+    def result(self) -> CanonicalForm:
+        """Run the search."""
+        planes = self._planes
+        self._explore(planes.colours.start, (), (), better=False)
+        best = self._best
+        assert best is not None
+        k, n = self._field, self._n
+        listed: list[Plane] = []
+        permutation = [0] * len(self._configuration.planes)
+        for i, (_, rows) in zip(best.order, best.image, strict=True):
+            plane = Plane(k, n, rows)
+            for copy in planes.copies[i]:
+                permutation[copy] = len(listed)
+                listed.append(plane)
+        matrix = canonical_matrix(k, best.matrix.tolist())
+        return CanonicalForm(
+            Configuration(tuple(listed)),
+            Collineation(tuple(permutation), matrix),
+            tuple(planes.permutation(images, planes) for images in self._automorphisms),
+            self._leaves,
+        )
+
+    def _explore(
+        self,
+        colouring: Colouring,
+        path: tuple[int, ...],
+        invariants: tuple[Any, ...],
+        *,
+        better: bool,
+    ) -> int:
+        """Search below a node; the depth to which to return (the node's own: go on)."""
+        depth = len(path)
+        single, cells = self._cells(colouring)
+        frame = self._frame(colouring, single)
+        is_leaf = frame is not None or not cells
+        invariant = (not is_leaf, colouring.trace)
+        if self._best is not None and not better:
+            known = self._best.invariants[depth] if depth < len(self._best.invariants) else None
+            if known is None or invariant > known:
+                return depth
+            better = invariant < known
+        invariants = (*invariants, invariant)
+        if is_leaf:
+            back = depth
+            for matrix, image, order in self._images(frame, single):
+                back = self._record(
+                    _Leaf(path, invariants, image, order, matrix), better=better, back=back
+                )
+                better = False
+            return back
+        cell = min(cells, key=lambda cell: (len(cell), colouring.colours[cell[0]]))
+        explored: set[int] = set()
+        for candidate in cell:
+            if explored:
+                fixing = [g for g in self._automorphisms if all(g[i] == i for i in path)]
+                if any(
+                    candidate in orbit and not explored.isdisjoint(orbit)
+                    for orbit in orbits(fixing, len(self._planes))
+                ):
+                    continue
+            explored.add(candidate)
+            marked = self._planes.colours.individualise(colouring, candidate)
+            had = self._best
+            back = self._explore(marked, (*path, candidate), invariants, better=better)
+            if self._best is not had:
+                better = False
+            if back < depth:
+                return back
+        return depth
+
+    def _record(self, leaf: _Leaf, *, better: bool, back: int) -> int:
+        """Compare a leaf with those before; where to return to."""
+        self._leaves += 1
+        if self._leaves > self._limit:
+            raise UsageError(
+                f"more than {self._limit} frames would have to be compared; "
+                "give a larger limit, or compare the configurations two by two"
+            )
+        best = self._best
+        if best is None or better or leaf.image < best.image:
+            self._best = leaf
+        twin = self._seen.setdefault(leaf.image, leaf)
+        if twin is leaf:
+            return back
+        images = [0] * len(leaf.order)
+        for here, there in zip(leaf.order, twin.order, strict=True):
+            images[there] = here
+        if any(i != image for i, image in enumerate(images)):
+            self._automorphisms.append(tuple(images))
+        common = 0
+        while common < min(len(leaf.path), len(twin.path)) and (
+            leaf.path[common] == twin.path[common]
+        ):
+            common += 1
+        if [images[i] for i in twin.path] != list(leaf.path):
+            return back
+        # The branch of this leaf is the image of that of its twin, which has been searched.
+        return min(back, common)
+
+    def _cells(self, colouring: Colouring) -> tuple[list[int], list[list[int]]]:
+        """Planes with a colour of their own, by colour; the other cells."""
+        by_colour: dict[int, list[int]] = {}
+        for i in range(len(self._planes)):
+            by_colour.setdefault(colouring.colours[i], []).append(i)
+        single = [by_colour[c][0] for c in sorted(by_colour) if len(by_colour[c]) == 1]
+        return single, [cell for cell in by_colour.values() if len(cell) > 1]
+
+    def _points(self, colouring: Colouring) -> list[tuple[Any, ...]]:
+        """Shared points with a colour of their own, by colour."""
+        start = len(self._planes)
+        by_colour: dict[int, list[int]] = {}
+        for j, flat in enumerate(self._planes.colours.flats):
+            if flat.flat.projective_dimension == 0:
+                by_colour.setdefault(colouring.colours[start + j], []).append(j)
+        flats = self._planes.colours.flats
+        return [
+            flats[by_colour[c][0]].flat.rows[0] for c in sorted(by_colour) if len(by_colour[c]) == 1
+        ]
+
+    def _frame(self, colouring: Colouring, single: Sequence[int]) -> "_Frame | None":
+        """A frame of the points and planes that are marked so far, if they make one."""
+        points = self._points(colouring)
+        basis = _independent(self._field, points, self._n)
+        if len(basis) < len(self._span):
+            return None
+        frame = _Frame(self._field, self._n, basis)
+        for point in points:
+            frame.scale_by_point(point)
+        for i in single:
+            frame.scale_by_rows(frame.move(self._planes.planes[i].rows))
+        # With all planes marked, what is left of the torus moves none of them.
+        everything = len(single) == len(self._planes)
+        return frame if everything or frame.is_rigid() else None
+
+    def _images(
+        self, frame: "_Frame | None", single: Sequence[int]
+    ) -> Iterator[tuple[Any, tuple[Any, ...], tuple[int, ...]]]:
+        """For a leaf: matrix, sorted images, and the planes in that order."""
+        frames = [frame] if frame is not None else self._all_frames(single)
+        k = self._field
+        for each in frames:
+            images = []
+            for i, plane in enumerate(self._planes.planes):
+                rows = each.rescale(each.move(plane.rows))
+                key = tuple(k.sort_key(x) for row in rows for x in row)
+                images.append(((len(self._planes.copies[i]), key), rows, i))
+            images.sort(key=lambda item: item[0])
+            image = tuple((key, rows) for key, rows, _ in images)
+            yield each.matrix(), _Image(image), tuple(i for _, _, i in images)
+
+    def _all_frames(self, single: Sequence[int]) -> Iterator["_Frame"]:
+        """Frames from all points of the planes, these in their definite order, over F_q."""
+        k: Any = self._field
+        if k.order is None:
+            raise UsageError(
+                "the points that the planes share do not span what the planes span, so over "
+                f"{k.name} they give no frame; compare the configurations two by two"
+            )
+        elements = [k.from_code(code) for code in range(k.order)]
+        combinations = list(iter_projective(elements, 3))
+
+        def extend(basis: list[Any]) -> Iterator[list[Any]]:
+            if len(basis) == len(self._span):
+                yield basis
+                return
+            for i in single:
+                rows = self._planes.planes[i].rows
+                if rank(k, [*basis, *rows], self._n) == len(basis):
+                    continue
+                for factors in combinations:
+                    vector = tuple(
+                        sum((f * x for f, x in zip(factors, column, strict=True)), k.zero)
+                        for column in zip(*rows, strict=True)
+                    )
+                    if rank(k, [*basis, vector], self._n) > len(basis):
+                        yield from extend([*basis, vector])
+                return
+
+        for basis in extend([]):
+            frame = _Frame(k, self._n, basis)
+            for i in single:
+                frame.scale_by_rows(frame.move(self._planes.planes[i].rows))
+            yield frame
+
+
+class _Image(tuple[Any, ...]):
+    """Sorted images of the planes, compared by their keys: rows need no order."""
+
+    __slots__ = ()
+
+    def _keys(self) -> tuple[Any, ...]:
+        return tuple(key for key, _ in self)
+
+    def __lt__(self, other: Any) -> bool:
+        return bool(self._keys() < other._keys())
+
+    def __eq__(self, other: object) -> bool:
+        return isinstance(other, _Image) and self._keys() == other._keys()
+
+    def __hash__(self) -> int:
+        return hash(self._keys())
+
+
+class _Frame:
+    """Coordinates with respect to some independent vectors, with a scale for each of them.
+
+    ``basis`` may span less than V; it is completed in any way, which the
+    planes in its span do not notice.
+    """
+
+    def __init__(self, field: Field, n: int, basis: Sequence[Sequence[Any]]) -> None:
+        self._field = field
+        self._n = n
+        self._size = len(basis)
+        units = [[field.one if i == j else field.zero for j in range(n)] for i in range(n)]
+        whole = _independent(field, [*basis, *units], n)
+        # Rows times this matrix are coordinates in the basis.
+        self._inverse = _inverse(field, whole, n)
+        self._component = list(range(self._size))
+        self._scale = [field.one] * n
+
+    def move(self, rows: Sequence[Sequence[Any]]) -> Rows:
+        """Canonical rows in the coordinates of the basis, not yet scaled."""
+        reduced, size = (self._field.matrix(rows, self._n) * self._inverse).rref()
+        return tuple(tuple(row) for row in reduced.tolist()[:size])
+
+    def scale_by_point(self, point: Sequence[Any]) -> None:
+        """Make coordinates of a point equal where no scale connects them yet."""
+        self.scale_by_rows(self.move([point]))
+
+    def scale_by_rows(self, rows: Rows) -> None:
+        """Make entries of canonical rows 1 where no scale connects their column to the pivot."""
+        for row in rows:
+            pivot = next(j for j, x in enumerate(row) if x)
+            for column in range(pivot + 1, self._size):
+                if row[column] and self._component[column] != self._component[pivot]:
+                    self._connect(pivot, column, row[column])
+
+    def _connect(self, pivot: int, column: int, entry: Any) -> None:
+        # The entry becomes entry·scale[column]/scale[pivot].
+        factor = self._scale[pivot] / (entry * self._scale[column])
+        old, new = self._component[column], self._component[pivot]
+        for j in range(self._size):
+            if self._component[j] == old:
+                self._component[j] = new
+                self._scale[j] = self._scale[j] * factor
+
+    def is_rigid(self) -> bool:
+        """Whether the scales are determined up to a common factor."""
+        return len(set(self._component)) <= 1
+
+    def rescale(self, rows: Rows) -> Rows:
+        """Canonical rows in the scaled coordinates."""
+        result = []
+        for row in rows:
+            pivot = next(j for j, x in enumerate(row) if x)
+            inverse = self._field.one / self._scale[pivot]
+            result.append(
+                tuple(x * s * inverse if x else x for x, s in zip(row, self._scale, strict=True))
+            )
+        return tuple(result)
+
+    def matrix(self) -> Any:
+        """The matrix, acting on columns, of the change to these coordinates."""
+        rows = [
+            [x * s for x, s in zip(row, self._scale, strict=True)] for row in self._inverse.tolist()
+        ]
+        return self._field.matrix(rows, self._n).transpose()
+
+
+def _independent(field: Field, vectors: Sequence[Sequence[Any]], n: int) -> list[Sequence[Any]]:
+    """The vectors that do not depend on those before them: pivot columns, one reduction."""
+    if not vectors:
+        return []
+    reduced, size = field.matrix(vectors, n).transpose().rref()
+    chosen, column = [], 0
+    for row in range(size):
+        while not reduced[row, column]:
+            column += 1
+        chosen.append(vectors[column])
+        column += 1
+    return chosen
+
+
+def _inverse(field: Field, rows: Sequence[Sequence[Any]], n: int) -> Any:
+    augmented = [
+        [*row, *(field.one if i == j else field.zero for j in range(n))]
+        for i, row in enumerate(rows)
+    ]
+    reduced, _ = field.matrix(augmented, 2 * n).rref()
+    return field.matrix([row[n:] for row in reduced.tolist()], n)
