@@ -1,0 +1,362 @@
+"""Pictures of incidences for paper: planes on a circle, and the incidence matrix.
+
+Colours are those of a palette made for all kinds of colour vision ("Color
+Universal Design", 2008), and never carry information alone: classes are
+adjacent and named, points differ by shape as well.
+"""
+
+import math
+from collections.abc import Sequence
+from dataclasses import dataclass
+from pathlib import Path
+from typing import TYPE_CHECKING, Any
+
+from trivector.configurations import Configuration, Incidence, SharedFlat
+from trivector.errors import UsageError
+from trivector.symmetry.collineations import orbits
+from trivector.symmetry.refinement import IncidenceColours
+
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure
+
+__all__ = ["FORMATS", "PlaneClasses", "circle_picture", "matrix_picture", "save_picture"]
+
+FORMATS = ("png", "svg", "pdf")
+
+_COLOURS = ("#0072B2", "#E69F00", "#009E73", "#CC79A7", "#D55E00", "#56B4E9", "#F0E442", "#999999")
+_MARKERS = ("o", "s", "^", "D", "p", "h", "v", "8")
+_INK, _FAINT = "#222222", "#9A9A9A"
+
+_WIDTH = 7.0  # inches: the text width of A4 or letter paper with ordinary margins
+_LONGEST_LABEL = 22
+_MOST_PLANES = 80
+
+
+@dataclass(frozen=True)
+class PlaneClasses:
+    """Planes in groups, in the order in which they are drawn.
+
+    Attributes
+    ----------
+    name : str
+        What a group is: ``"orbit"``, ``"class"``.
+    groups : tuple of tuples of int
+    """
+
+    name: str
+    groups: tuple[tuple[int, ...], ...]
+
+    @classmethod
+    def from_refinement(cls, configuration: Configuration) -> "PlaneClasses":
+        """The classes of colour refinement on the incidence graph."""
+        distinct = Configuration(tuple(dict.fromkeys(configuration.planes)))
+        repeated = [configuration.planes.count(plane) for plane in distinct.planes]
+        colours = IncidenceColours(distinct, repeated).start.colours
+        of_plane = dict(zip(distinct.planes, colours, strict=False))
+        groups: dict[int, list[int]] = {}
+        for i, plane in enumerate(configuration.planes):
+            groups.setdefault(of_plane[plane], []).append(i)
+        return cls("class", tuple(tuple(groups[c]) for c in sorted(groups)))
+
+    @classmethod
+    def from_permutations(cls, permutations: Sequence[Sequence[int]], count: int) -> "PlaneClasses":
+        """The orbits of a group given by generators."""
+        return cls("orbit", orbits(permutations, count))
+
+
+def circle_picture(incidence: Incidence, classes: PlaneClasses) -> "Figure":
+    """The planes on a circle, grouped; inside it the points and lines that they share.
+
+    A point on exactly two planes is the chord between them; every other
+    point or line is a node joined to its planes, its number inside.
+
+    Returns
+    -------
+    matplotlib.figure.Figure
+        7 inches wide, for `save_picture`.
+
+    Raises
+    ------
+    UsageError
+        If there are more than 80 planes, or matplotlib is missing.
+    """
+    configuration = incidence.configuration
+    _check_size(configuration)
+    figure = _new_figure(_WIDTH, _WIDTH + 0.9)
+    axes = figure.add_axes((0.0, 0.9 / (_WIDTH + 0.9), 1.0, _WIDTH / (_WIDTH + 0.9)))
+    axes.set_axis_off()
+    axes.set_aspect("equal")
+    labels = _labels(configuration)
+    longest = max(len(label) for label in labels)
+    reach = 1.16 + 0.030 * longest
+    axes.set_xlim(-reach, reach)
+    axes.set_ylim(-reach, reach)
+
+    angles = _plane_angles(classes)
+    places = {i: (math.sin(a), math.cos(a)) for i, a in angles.items()}
+    pairs = [p for p in incidence.points if len(p.planes) == 2]
+    hubs = [p for p in incidence.points if len(p.planes) > 2] + list(incidence.lines)
+    for point in pairs:
+        (x0, y0), (x1, y1) = (places[i] for i in point.planes)
+        axes.plot([x0, x1], [y0, y1], color=_FAINT, linewidth=0.7, zorder=1)
+    styles = _hub_styles(hubs)
+    numbers = {
+        id(flat): j for kind in (incidence.points, incidence.lines) for j, flat in enumerate(kind)
+    }
+    for hub, (x, y) in zip(hubs, _hub_places(hubs, angles), strict=True):
+        marker, colour, _ = styles[_hub_key(hub)]
+        for i in hub.planes:
+            px, py = places[i]
+            axes.plot([x, px], [y, py], color=colour, linewidth=0.9, alpha=0.75, zorder=2)
+        axes.plot([x], [y], marker=marker, markersize=13, color="white", markeredgecolor=colour,
+                  markeredgewidth=1.6, zorder=4)  # fmt: skip
+        axes.text(x, y, str(numbers[id(hub)]), ha="center", va="center_baseline", fontsize=7,
+                  color=_INK, zorder=5)  # fmt: skip
+    size = 9 if len(labels) <= 30 else 6
+    for position, group in enumerate(classes.groups):
+        colour = _COLOURS[position % len(_COLOURS)]
+        for i in group:
+            x, y = places[i]
+            axes.plot([x], [y], marker="o", markersize=9, color=colour, markeredgecolor=_INK,
+                      markeredgewidth=0.8, zorder=6, gid=f"plane-{i}")  # fmt: skip
+            _radial_label(axes, angles[i], labels[i], size)
+    _legend(figure, incidence, classes, styles, bool(pairs))
+    return figure
+
+
+def _check_size(configuration: Configuration) -> None:
+    count = len(configuration.planes)
+    if count > _MOST_PLANES:
+        raise UsageError(
+            f"a picture of {count} planes cannot be read; draw at most {_MOST_PLANES}, "
+            "or write the graph with --format graphml"
+        )
+
+
+def _new_figure(width: float, height: float) -> "Figure":
+    try:
+        from matplotlib.figure import Figure
+    except ImportError:
+        raise UsageError(
+            "pictures need the library matplotlib; install it with pip install 'trivector[pictures]'"
+        ) from None
+    return Figure(figsize=(width, height), dpi=150, facecolor="white")
+
+
+def _labels(configuration: Configuration) -> list[str]:
+    """The number of each plane, and its label if there is one."""
+    result = []
+    for i in range(len(configuration.planes)):
+        label = configuration.labels[i] if configuration.labels else ""
+        label = "".join(c if c.isprintable() else " " for c in label).replace("$", r"\$")
+        text = str(i) if not label or label == str(i) else f"{i}  {label}"
+        result.append(text if len(text) <= _LONGEST_LABEL else text[: _LONGEST_LABEL - 1] + "…")
+    return result
+
+
+def _plane_angles(classes: PlaneClasses) -> dict[int, float]:
+    """Clockwise from the top, with a gap between groups."""
+    gap = 0.6 if len(classes.groups) > 1 else 0.0
+    total = sum(len(group) + gap for group in classes.groups)
+    angles, position = {}, 0.0
+    for group in classes.groups:
+        for i in group:
+            angles[i] = 2 * math.pi * position / total
+            position += 1
+        position += gap
+    return angles
+
+
+def _hub_places(hubs: Sequence[SharedFlat], angles: dict[int, float]) -> list[tuple[float, float]]:
+    """Evenly on one or two inner circles, each hub near the mean direction of its planes."""
+    if not hubs:
+        return []
+    if len(hubs) == 1:
+        return [(0.0, 0.0)]
+    directions = []
+    for j, hub in enumerate(hubs):
+        x = sum(math.sin(angles[i]) for i in hub.planes)
+        y = sum(math.cos(angles[i]) for i in hub.planes)
+        # Without a mean direction any place is as good.
+        mean = math.atan2(x, y) if math.hypot(x, y) > 1e-6 else 2 * math.pi * j / len(hubs)
+        directions.append((round(mean % (2 * math.pi), 9), j))
+    order = [j for _, j in sorted(directions)]
+    offset = directions[order[0]][0]
+    places = [(0.0, 0.0)] * len(hubs)
+    for position, j in enumerate(order):
+        angle = offset + 2 * math.pi * position / len(hubs)
+        # Up to 24 hubs fit on one circle of this radius; more alternate between two or three.
+        rings = 1 + (len(hubs) - 1) // 24
+        radius = 0.62 - 0.17 * (position % rings)
+        places[j] = (radius * math.sin(angle), radius * math.cos(angle))
+    return places
+
+
+def _hub_key(hub: SharedFlat) -> tuple[int, int]:
+    return hub.flat.projective_dimension, len(hub.planes)
+
+
+def _hub_styles(hubs: Sequence[SharedFlat]) -> dict[tuple[int, int], tuple[str, str, str]]:
+    """Marker, colour and words for each kind of point and line."""
+    styles = {}
+    for position, key in enumerate(sorted({_hub_key(hub) for hub in hubs})):
+        dimension, planes = key
+        count = sum(_hub_key(hub) == key for hub in hubs)
+        noun = ("point", "line")[dimension] + ("" if count == 1 else "s")
+        colour = (_INK, _COLOURS[4], _COLOURS[0], _COLOURS[3], _COLOURS[2])[position % 5]
+        styles[key] = (
+            _MARKERS[position % len(_MARKERS)],
+            colour,
+            f"{count} {noun} on {planes} planes",
+        )
+    return styles
+
+
+def _radial_label(axes: Any, angle: float, text: str, size: int) -> None:
+    x, y = 1.07 * math.sin(angle), 1.07 * math.cos(angle)
+    degrees = 90 - math.degrees(angle)
+    flipped = angle % (2 * math.pi) > math.pi
+    axes.text(x, y, text, rotation=degrees + (180 if flipped else 0), rotation_mode="anchor",
+              ha="right" if flipped else "left", va="center", fontsize=size, color=_INK)  # fmt: skip
+
+
+def _legend(
+    figure: "Figure",
+    incidence: Incidence,
+    classes: PlaneClasses,
+    styles: dict[tuple[int, int], tuple[str, str, str]],
+    chords: bool,
+) -> None:
+    from matplotlib.lines import Line2D
+
+    handles = []
+    shown = classes.groups if len(classes.groups) <= 6 else ()
+    for position, group in enumerate(shown):
+        noun = "plane" if len(group) == 1 else "planes"
+        handles.append(Line2D([], [], marker="o", linestyle="", color=_COLOURS[position],
+                              markeredgecolor=_INK, markersize=8,
+                              label=f"{len(group)} {noun} ({classes.name} {position + 1})"))  # fmt: skip
+    if not shown:
+        handles.append(Line2D([], [], marker="o", linestyle="", color=_COLOURS[0],
+                              markeredgecolor=_INK, markersize=8,
+                              label=f"planes, in {len(classes.groups)} {_plural(classes.name)}"))  # fmt: skip
+    for marker, colour, words in styles.values():
+        handles.append(Line2D([], [], marker=marker, linestyle="-", color=colour,
+                              markerfacecolor="white", markersize=9, label=words))  # fmt: skip
+    if chords:
+        count = incidence.profile("points")[2]
+        handles.append(Line2D([], [], color=_FAINT, linewidth=1.2,
+                              label=f"{count} point{'' if count == 1 else 's'} on 2 planes"))  # fmt: skip
+    figure.legend(handles=handles, loc="lower center", ncols=min(3, len(handles)), fontsize=8,
+                  frameon=False, bbox_to_anchor=(0.5, 0.005))  # fmt: skip
+
+
+def _plural(noun: str) -> str:
+    return noun + ("es" if noun.endswith("s") else "s")
+
+
+def matrix_picture(incidence: Incidence, classes: PlaneClasses) -> "Figure":
+    """The incidence matrix: planes by groups, points by the number of planes on them.
+
+    Within a block the points are sorted by their planes, so that structure
+    shows as pattern. Numbers above the blocks say how many planes are on each
+    of their points; lines that planes share follow after the points.
+
+    Returns
+    -------
+    matplotlib.figure.Figure
+
+    Raises
+    ------
+    UsageError
+        If there are more than 80 planes, or matplotlib is missing.
+    """
+    configuration = incidence.configuration
+    _check_size(configuration)
+    order = [i for group in classes.groups for i in group]
+    position_of = {i: position for position, i in enumerate(order)}
+    flats = list(incidence.points) + list(incidence.lines)
+    flats.sort(key=lambda flat: (flat.flat.projective_dimension, -len(flat.planes),
+                                 sorted(position_of[i] for i in flat.planes)))  # fmt: skip
+    count, columns = len(order), max(len(flats), 1)
+    cell = min(0.24, (_WIDTH - 1.9) / columns)
+    row_height = 0.20 if count <= 40 else 0.12
+    height = row_height * count + 1.5
+    labels = _labels(configuration)
+    left = 0.35 + 0.072 * max(len(label) for label in labels)
+    width = max(left + cell * columns + 0.4, 3.6)
+    figure = _new_figure(width, height)
+    axes = figure.add_axes(
+        (left / width, 0.75 / height, cell * columns / width, row_height * count / height)
+    )
+    from matplotlib.collections import PatchCollection
+    from matplotlib.patches import Rectangle
+
+    for group_position, group in enumerate(classes.groups):
+        rectangles = [
+            Rectangle((column + 0.06, position_of[i] + 0.06), 0.88, 0.88)
+            for column, flat in enumerate(flats)
+            for i in flat.planes
+            if i in group
+        ]
+        colour = _COLOURS[group_position % len(_COLOURS)]
+        axes.add_collection(
+            PatchCollection(rectangles, facecolor=colour, edgecolor=_INK, linewidth=0.25)
+        )
+    axes.set_xlim(0, columns)
+    axes.set_ylim(count, 0)
+    size = 8 if count <= 40 else 6
+    axes.set_yticks([p + 0.5 for p in range(count)], [labels[i] for i in order], fontsize=size)
+    axes.set_xticks([])
+    axes.tick_params(length=0)
+    border = 0
+    for group in classes.groups[:-1]:
+        border += len(group)
+        axes.axhline(border, color=_INK, linewidth=0.8)
+    _column_blocks(axes, flats, cell)
+    names = "points" + (" and lines" if incidence.lines else "")
+    axes.set_xlabel(
+        f"{len(flats)} {names}, by the number of planes on them (above);\n"
+        f"planes by {classes.name}", fontsize=8,
+    )  # fmt: skip
+    return figure
+
+
+def _column_blocks(axes: Any, flats: Sequence[SharedFlat], cell: float) -> None:
+    """A line between blocks of columns, and the number of planes above each block."""
+    starts = [
+        j for j in range(len(flats)) if j == 0 or _hub_key(flats[j]) != _hub_key(flats[j - 1])
+    ]
+    last_centre, raised = -1.0, False
+    for start, end in zip(starts, [*starts[1:], len(flats)], strict=True):
+        if start:
+            axes.axvline(start, color=_INK, linewidth=0.8)
+        dimension, planes = _hub_key(flats[start])
+        centre = (start + end) / 2
+        raised = not raised if (centre - last_centre) * cell < 0.3 and start else False
+        axes.annotate(f"{'line ' if dimension else ''}{planes}", (centre, 0), xytext=(0, 14 if raised else 3),
+                      textcoords="offset points", ha="center", va="bottom", fontsize=8)  # fmt: skip
+        last_centre = centre
+
+
+def save_picture(figure: "Figure", path: str | Path, kind: str) -> None:
+    """Write a figure as PNG, SVG or PDF; same figure and same library, same bytes.
+
+    Parameters
+    ----------
+    figure : matplotlib.figure.Figure
+    path : str or Path
+    kind : str
+        ``"png"``, ``"svg"`` or ``"pdf"``.
+    """
+    import matplotlib
+
+    metadata: dict[str, dict[str, Any]] = {
+        "png": {"Software": None},
+        "svg": {"Date": None},
+        "pdf": {"CreationDate": None},
+    }
+    if kind not in metadata:
+        raise UsageError(f"pictures are written as {', '.join(FORMATS)}, not as {kind}")
+    with matplotlib.rc_context({"svg.hashsalt": "trivector", "font.family": "DejaVu Sans"}):
+        figure.savefig(path, format=kind, metadata=metadata[kind])
