@@ -68,7 +68,7 @@ def circle_picture(incidence: Incidence, classes: PlaneClasses) -> "Figure":
     """The planes on a circle, grouped; inside it the points and lines that they share.
 
     A point on exactly two planes is the chord between them; every other
-    point or line is a node joined to its planes, its number inside.
+    point or line is a node joined to its planes, with its number (of a line: L).
 
     Returns
     -------
@@ -82,26 +82,34 @@ def circle_picture(incidence: Incidence, classes: PlaneClasses) -> "Figure":
     """
     configuration = incidence.configuration
     _check_size(configuration)
-    figure = _new_figure(_WIDTH, _WIDTH + 0.9)
-    axes = figure.add_axes((0.0, 0.9 / (_WIDTH + 0.9), 1.0, _WIDTH / (_WIDTH + 0.9)))
+    pairs = [p for p in incidence.points if len(p.planes) == 2]
+    hubs = [p for p in incidence.points if len(p.planes) > 2] + list(incidence.lines)
+    styles = _hub_styles(hubs)
+    figure = _new_figure(_WIDTH, _WIDTH)  # fails early where matplotlib is missing
+    handles = _legend_handles(incidence, classes, styles)
+    legend = 0.15 + 0.18 * math.ceil(len(handles) / 3)
+    height = _WIDTH + legend
+    figure.set_size_inches(_WIDTH, height)
+    figure.legend(handles=handles, loc="lower center", ncols=min(3, len(handles)), fontsize=8,
+                  frameon=False, bbox_to_anchor=(0.5, 0.0))  # fmt: skip
+    axes = figure.add_axes((0.0, legend / height, 1.0, _WIDTH / height))
     axes.set_axis_off()
     axes.set_aspect("equal")
     labels = _labels(configuration)
     longest = max(len(label) for label in labels)
-    reach = 1.16 + 0.030 * longest
+    reach = 1.12 + 0.031 * longest
     axes.set_xlim(-reach, reach)
     axes.set_ylim(-reach, reach)
 
     angles = _plane_angles(classes)
     places = {i: (math.sin(a), math.cos(a)) for i, a in angles.items()}
-    pairs = [p for p in incidence.points if len(p.planes) == 2]
-    hubs = [p for p in incidence.points if len(p.planes) > 2] + list(incidence.lines)
     for point in pairs:
         (x0, y0), (x1, y1) = (places[i] for i in point.planes)
         axes.plot([x0, x1], [y0, y1], color=_FAINT, linewidth=0.7, zorder=1)
-    styles = _hub_styles(hubs)
     numbers = {
-        id(flat): j for kind in (incidence.points, incidence.lines) for j, flat in enumerate(kind)
+        id(flat): f"{letter}{j}"
+        for letter, kind in (("", incidence.points), ("L", incidence.lines))
+        for j, flat in enumerate(kind)
     }
     for hub, (x, y) in zip(hubs, _hub_places(hubs, angles), strict=True):
         marker, colour, _ = styles[_hub_key(hub)]
@@ -110,7 +118,7 @@ def circle_picture(incidence: Incidence, classes: PlaneClasses) -> "Figure":
             axes.plot([x, px], [y, py], color=colour, linewidth=0.9, alpha=0.75, zorder=2)
         axes.plot([x], [y], marker=marker, markersize=13, color="white", markeredgecolor=colour,
                   markeredgewidth=1.6, zorder=4)  # fmt: skip
-        axes.text(x, y, str(numbers[id(hub)]), ha="center", va="center_baseline", fontsize=7,
+        axes.text(x, y, numbers[id(hub)], ha="center", va="center_baseline", fontsize=7,
                   color=_INK, zorder=5)  # fmt: skip
     size = 9 if len(labels) <= 30 else 6
     for position, group in enumerate(classes.groups):
@@ -120,7 +128,6 @@ def circle_picture(incidence: Incidence, classes: PlaneClasses) -> "Figure":
             axes.plot([x], [y], marker="o", markersize=9, color=colour, markeredgecolor=_INK,
                       markeredgewidth=0.8, zorder=6, gid=f"plane-{i}")  # fmt: skip
             _radial_label(axes, angles[i], labels[i], size)
-    _legend(figure, incidence, classes, styles, bool(pairs))
     return figure
 
 
@@ -138,7 +145,7 @@ def _new_figure(width: float, height: float) -> "Figure":
         from matplotlib.figure import Figure
     except ImportError:
         raise UsageError(
-            "pictures need the library matplotlib; install it with pip install 'trivector[pictures]'"
+            "pictures need the library matplotlib: pip install 'trivector[pictures]'"
         ) from None
     return Figure(figsize=(width, height), dpi=150, facecolor="white")
 
@@ -168,7 +175,11 @@ def _plane_angles(classes: PlaneClasses) -> dict[int, float]:
 
 
 def _hub_places(hubs: Sequence[SharedFlat], angles: dict[int, float]) -> list[tuple[float, float]]:
-    """Evenly on one or two inner circles, each hub near the mean direction of its planes."""
+    """On inner circles, each hub near the mean direction of its planes, away from other spokes.
+
+    Of some radii and rotations the one is taken that keeps every hub farthest
+    from the spokes of the others.
+    """
     if not hubs:
         return []
     if len(hubs) == 1:
@@ -179,17 +190,45 @@ def _hub_places(hubs: Sequence[SharedFlat], angles: dict[int, float]) -> list[tu
         y = sum(math.cos(angles[i]) for i in hub.planes)
         # Without a mean direction any place is as good.
         mean = math.atan2(x, y) if math.hypot(x, y) > 1e-6 else 2 * math.pi * j / len(hubs)
-        directions.append((round(mean % (2 * math.pi), 9), j))
+        directions.append((round(mean % (2 * math.pi), 6), j))
     order = [j for _, j in sorted(directions)]
     offset = directions[order[0]][0]
-    places = [(0.0, 0.0)] * len(hubs)
-    for position, j in enumerate(order):
-        angle = offset + 2 * math.pi * position / len(hubs)
-        # Up to 24 hubs fit on one circle of this radius; more alternate between two or three.
-        rings = 1 + (len(hubs) - 1) // 24
-        radius = 0.62 - 0.17 * (position % rings)
-        places[j] = (radius * math.sin(angle), radius * math.cos(angle))
-    return places
+    # Up to 24 hubs fit on one circle; more go round two or three in turn.
+    rings = 1 + (len(hubs) - 1) // 24
+    best: tuple[float, list[tuple[float, float]]] | None = None
+    rotations = 12 if len(hubs) <= 40 else 1
+    for rotation in range(rotations):
+        for radius in (0.62, 0.68, 0.56, 0.74, 0.50):
+            places = [(0.0, 0.0)] * len(hubs)
+            for position, j in enumerate(order):
+                turn = (position + (rotation - rotations // 2) / 6) / len(hubs)
+                angle = offset + 2 * math.pi * turn
+                r = radius - 0.17 * (position % rings)
+                places[j] = (r * math.sin(angle), r * math.cos(angle))
+            room = _room(hubs, places, angles) if rotations > 1 else 0.0
+            if best is None or room > best[0] + 1e-6:
+                best = room, places
+    assert best is not None
+    return best[1]
+
+
+def _room(
+    hubs: Sequence[SharedFlat], places: Sequence[tuple[float, float]], angles: dict[int, float]
+) -> float:
+    """How the hubs keep off the spokes of others: the smallest distance, then the mean of all."""
+    distances = []
+    for j, (x, y) in enumerate(places):
+        nearest = 1.0
+        for k, (u, v) in enumerate(places):
+            if k == j:
+                continue
+            for i in hubs[k].planes:
+                du, dv = math.sin(angles[i]) - u, math.cos(angles[i]) - v
+                t = ((x - u) * du + (y - v) * dv) / (du * du + dv * dv)
+                t = min(max(t, 0.0), 1.0)
+                nearest = min(nearest, math.hypot(x - u - t * du, y - v - t * dv))
+        distances.append(min(nearest, 0.06))
+    return min(distances) + sum(distances) / len(distances)
 
 
 def _hub_key(hub: SharedFlat) -> tuple[int, int]:
@@ -202,53 +241,58 @@ def _hub_styles(hubs: Sequence[SharedFlat]) -> dict[tuple[int, int], tuple[str, 
     for position, key in enumerate(sorted({_hub_key(hub) for hub in hubs})):
         dimension, planes = key
         count = sum(_hub_key(hub) == key for hub in hubs)
-        noun = ("point", "line")[dimension] + ("" if count == 1 else "s")
+        words = f"{_count(count, ('point', 'line')[dimension])} {('on', 'in')[dimension]} {planes} planes"
         colour = (_INK, _COLOURS[4], _COLOURS[0], _COLOURS[3], _COLOURS[2])[position % 5]
-        styles[key] = (
-            _MARKERS[position % len(_MARKERS)],
-            colour,
-            f"{count} {noun} on {planes} planes",
-        )
+        styles[key] = (_MARKERS[position % len(_MARKERS)], colour, words)
     return styles
 
 
 def _radial_label(axes: Any, angle: float, text: str, size: int) -> None:
     x, y = 1.07 * math.sin(angle), 1.07 * math.cos(angle)
-    degrees = 90 - math.degrees(angle)
     flipped = angle % (2 * math.pi) > math.pi
-    axes.text(x, y, text, rotation=degrees + (180 if flipped else 0), rotation_mode="anchor",
-              ha="right" if flipped else "left", va="center", fontsize=size, color=_INK)  # fmt: skip
+    degrees = 90 - math.degrees(angle) + (180 if flipped else 0)
+    side = "right" if flipped else "left"
+    axes.text(x, y, text, rotation=degrees, rotation_mode="anchor", ha=side, va="center",
+              fontsize=size, color=_INK)  # fmt: skip
 
 
-def _legend(
-    figure: "Figure",
+def _legend_handles(
     incidence: Incidence,
     classes: PlaneClasses,
     styles: dict[tuple[int, int], tuple[str, str, str]],
-    chords: bool,
-) -> None:
+) -> list[Any]:
     from matplotlib.lines import Line2D
 
-    handles = []
-    shown = classes.groups if len(classes.groups) <= 6 else ()
-    for position, group in enumerate(shown):
-        noun = "plane" if len(group) == 1 else "planes"
-        handles.append(Line2D([], [], marker="o", linestyle="", color=_COLOURS[position],
-                              markeredgecolor=_INK, markersize=8,
-                              label=f"{len(group)} {noun} ({classes.name} {position + 1})"))  # fmt: skip
-    if not shown:
-        handles.append(Line2D([], [], marker="o", linestyle="", color=_COLOURS[0],
-                              markeredgecolor=_INK, markersize=8,
-                              label=f"planes, in {len(classes.groups)} {_plural(classes.name)}"))  # fmt: skip
-    for marker, colour, words in styles.values():
-        handles.append(Line2D([], [], marker=marker, linestyle="-", color=colour,
-                              markerfacecolor="white", markersize=9, label=words))  # fmt: skip
-    if chords:
-        count = incidence.profile("points")[2]
-        handles.append(Line2D([], [], color=_FAINT, linewidth=1.2,
-                              label=f"{count} point{'' if count == 1 else 's'} on 2 planes"))  # fmt: skip
-    figure.legend(handles=handles, loc="lower center", ncols=min(3, len(handles)), fontsize=8,
-                  frameon=False, bbox_to_anchor=(0.5, 0.005))  # fmt: skip
+    entries: list[tuple[str, Any, str, str]] = []  # marker, line, colour, words
+    if len(classes.groups) <= 6:
+        for position, group in enumerate(classes.groups):
+            words = f"{_count(len(group), 'plane')} ({classes.name} {position + 1})"
+            entries.append(("o", "", _COLOURS[position], words))
+    else:
+        words = f"planes, in {len(classes.groups)} {_plural(classes.name)} round the circle"
+        entries.append(("o", "", _COLOURS[0], words))
+    entries += [(marker, "-", colour, words) for marker, colour, words in styles.values()]
+    pairs = incidence.profile("points").get(2)
+    if pairs:
+        entries.append(("", "-", _FAINT, f"{_count(pairs, 'point')} on 2 planes"))
+    return [
+        Line2D(
+            [],
+            [],
+            marker=marker,
+            linestyle=line,
+            color=colour,
+            label=words,
+            markersize=8,
+            markerfacecolor="white" if line else colour,
+            markeredgecolor=colour if line else _INK,
+        )
+        for marker, line, colour, words in entries
+    ]
+
+
+def _count(number: int, noun: str) -> str:
+    return f"{number} {noun}" if number == 1 else f"{number} {noun}s"
 
 
 def _plural(noun: str) -> str:
@@ -281,13 +325,14 @@ def matrix_picture(incidence: Incidence, classes: PlaneClasses) -> "Figure":
     count, columns = len(order), max(len(flats), 1)
     cell = min(0.24, (_WIDTH - 1.9) / columns)
     row_height = 0.20 if count <= 40 else 0.12
-    height = row_height * count + 1.5
+    height = row_height * count + 0.95
+    edge = 0.25 if cell > 0.06 else 0.0
     labels = _labels(configuration)
     left = 0.35 + 0.072 * max(len(label) for label in labels)
-    width = max(left + cell * columns + 0.4, 3.6)
+    width = max(left + cell * columns + 0.4, 5.2)
     figure = _new_figure(width, height)
     axes = figure.add_axes(
-        (left / width, 0.75 / height, cell * columns / width, row_height * count / height)
+        (left / width, 0.55 / height, cell * columns / width, row_height * count / height)
     )
     from matplotlib.collections import PatchCollection
     from matplotlib.patches import Rectangle
@@ -301,7 +346,7 @@ def matrix_picture(incidence: Incidence, classes: PlaneClasses) -> "Figure":
         ]
         colour = _COLOURS[group_position % len(_COLOURS)]
         axes.add_collection(
-            PatchCollection(rectangles, facecolor=colour, edgecolor=_INK, linewidth=0.25)
+            PatchCollection(rectangles, facecolor=colour, edgecolor=_INK, linewidth=edge)
         )
     axes.set_xlim(0, columns)
     axes.set_ylim(count, 0)
@@ -314,11 +359,11 @@ def matrix_picture(incidence: Incidence, classes: PlaneClasses) -> "Figure":
         border += len(group)
         axes.axhline(border, color=_INK, linewidth=0.8)
     _column_blocks(axes, flats, cell)
-    names = "points" + (" and lines" if incidence.lines else "")
-    axes.set_xlabel(
-        f"{len(flats)} {names}, by the number of planes on them (above);\n"
-        f"planes by {classes.name}", fontsize=8,
-    )  # fmt: skip
+    names = _count(len(incidence.points), "point")
+    if incidence.lines:
+        names += " and " + _count(len(incidence.lines), "line")
+    words = f"{names}, by the number of planes (above); planes by {classes.name}"
+    figure.text(0.15 / width, 0.2 / height, words, fontsize=8, color=_INK)
     return figure
 
 
@@ -334,8 +379,9 @@ def _column_blocks(axes: Any, flats: Sequence[SharedFlat], cell: float) -> None:
         dimension, planes = _hub_key(flats[start])
         centre = (start + end) / 2
         raised = not raised if (centre - last_centre) * cell < 0.3 and start else False
-        axes.annotate(f"{'line ' if dimension else ''}{planes}", (centre, 0), xytext=(0, 14 if raised else 3),
-                      textcoords="offset points", ha="center", va="bottom", fontsize=8)  # fmt: skip
+        words = f"{'line ' if dimension else ''}{planes}"
+        axes.annotate(words, (centre, 0), xytext=(0, 14 if raised else 3), fontsize=8,
+                      textcoords="offset points", ha="center", va="bottom")  # fmt: skip
         last_centre = centre
 
 
