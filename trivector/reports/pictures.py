@@ -241,7 +241,8 @@ def _hub_styles(hubs: Sequence[SharedFlat]) -> dict[tuple[int, int], tuple[str, 
     for position, key in enumerate(sorted({_hub_key(hub) for hub in hubs})):
         dimension, planes = key
         count = sum(_hub_key(hub) == key for hub in hubs)
-        words = f"{_count(count, ('point', 'line')[dimension])} {('on', 'in')[dimension]} {planes} planes"
+        noun, preposition = ("point", "on") if dimension == 0 else ("line", "in")
+        words = f"{_count(count, noun)} {preposition} {planes} planes"
         colour = (_INK, _COLOURS[4], _COLOURS[0], _COLOURS[3], _COLOURS[2])[position % 5]
         styles[key] = (_MARKERS[position % len(_MARKERS)], colour, words)
     return styles

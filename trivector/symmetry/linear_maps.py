@@ -13,6 +13,8 @@ __all__ = ["MapSystem", "canonical_matrix", "find_invertible", "image_rows", "is
 # Grids of at most so many points decide whether a determinant vanishes identically.
 _LARGEST_GRID = 20_000
 _ATTEMPTS = 400
+_WONG_ATTEMPTS = 5
+_ENOUGH = 64  # elements, for a random matrix to be general
 
 
 class MapSystem:
@@ -106,52 +108,70 @@ def find_invertible(field: Field, space: Any, n: int, rng: Random) -> Any | None
     return None
 
 
-def is_never_invertible(field: Field, space: Any, n: int) -> bool | None:
+def is_never_invertible(field: Field, space: Any, n: int, rng: Random) -> bool | None:
     """Whether the determinant vanishes at every matrix of the space, over any extension too.
 
     Returns
     -------
     bool or None
-        None if the space is too large to decide.
+        None if neither of the two tests decides.
 
     Notes
     -----
-    A polynomial of degree ≤ n in each of d variables that vanishes on a grid
-    of (n+1)^d points is zero; over fields with fewer elements the grid lies in
-    an extension.
+    A subspace U with dim S·U < dim U proves that no matrix of S is
+    invertible. For a matrix A in S let W_0 = 0, W_{i+1} = S·A^{-1}(W_i); if the
+    limit W lies in the image of A, then U = A^{-1}(W) is such a subspace
+    ("Generalized Wong sequences and their applications to Edmonds' problems",
+    2014, arXiv 1307.6429). Otherwise, for small dimension d: a polynomial of
+    degree ≤ n in each of d variables that vanishes on a grid of (n+1)^d points
+    is zero; over fields with fewer elements the grid lies in an extension.
     """
-    basis, dimension = space.tolist(), space.nrows()
-    if _common_rank(field, basis, n) < n or _joint_image(field, basis, n) < n:
-        return True
+    dimension = space.nrows()
+    over, rows, values = _larger_field(field, space.tolist(), _ENOUGH)
+    matrix = over.matrix(rows, n * n)
+    basis = [_square(over, row, n) for row in rows]
+    for _ in range(_WONG_ATTEMPTS):
+        factors = [over.random_element(rng) for _ in basis]
+        candidate = _square(over, (over.matrix([factors], dimension) * matrix).tolist()[0], n)
+        if candidate.det():
+            return False
+        if _shrinks(over, basis, candidate, n):
+            return True
     if (n + 1) ** dimension > _LARGEST_GRID:
         return None
-    over, lifted, values = _grid_field(field, basis, n + 1)
-    matrix = over.matrix(lifted, n * n)
-    for factors in product(values, repeat=dimension):
-        row = (over.matrix([list(factors)], dimension) * matrix).tolist()[0]
-        if _square(over, row, n).det():
+    return not any(
+        _square(over, (over.matrix([list(factors)], dimension) * matrix).tolist()[0], n).det()
+        for factors in product(values[: n + 1], repeat=dimension)
+    )
+
+
+def _shrinks(field: Field, basis: Sequence[Any], matrix: Any, n: int) -> bool:
+    """Whether the Wong sequence of a singular matrix ends inside its image."""
+    image = row_space(field, matrix.transpose().tolist(), n)
+    limit: Rows = ()
+    while True:
+        forms = kernel(field, limit, n)
+        pulled = kernel(field, (field.matrix(forms, n) * matrix).tolist(), n) if forms else None
+        if pulled is None:  # the limit is everything
             return False
-    return True
+        vectors = field.matrix(pulled, n)
+        pushed = [row for b in basis for row in (vectors * b.transpose()).tolist()]
+        following = row_space(field, [*limit, *pushed], n)
+        if len(row_space(field, [*image, *following], n)) > len(image):
+            return False
+        if len(following) == len(limit):
+            return True
+        limit = following
 
 
-def _common_rank(field: Field, basis: Sequence[Sequence[Any]], n: int) -> int:
-    """n minus the dimension of the common kernel of all matrices."""
-    rows = [row[i * n : (i + 1) * n] for row in basis for i in range(n)]
-    return len(row_space(field, rows, n))
-
-
-def _joint_image(field: Field, basis: Sequence[Sequence[Any]], n: int) -> int:
-    """The dimension of the sum of all images."""
-    columns = [row[j::n] for row in basis for j in range(n)]
-    return len(row_space(field, columns, n))
-
-
-def _grid_field(
+def _larger_field(
     field: Any, basis: Sequence[Sequence[Any]], size: int
 ) -> tuple[Any, list[list[Any]], list[Any]]:
     """A field with at least ``size`` elements, the basis in it, and that many elements."""
     if field.order is None:
         return field, [list(row) for row in basis], [field.element(i) for i in range(size)]
+    if field.order >= size:
+        return field, [list(row) for row in basis], [field.from_code(i) for i in range(size)]
     degree = 1
     while field.order**degree < size:
         degree += 1

@@ -234,7 +234,7 @@ class Search:
             return None
         matrix = find_invertible(field, space, n, self._rng)
         if matrix is None:
-            never = True if space.nrows() == 1 else is_never_invertible(field, space, n)
+            never = True if space.nrows() == 1 else is_never_invertible(field, space, n, self._rng)
             if never is None:
                 self.undecided = (
                     "whether a space of linear maps of dimension "
