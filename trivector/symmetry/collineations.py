@@ -1,7 +1,7 @@
 """The collineations that keep a configuration: a stabiliser chain with early linear tests."""
 
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 from functools import cached_property
 from random import Random
 from typing import Any
@@ -102,6 +102,9 @@ class CollineationGroup:
         Whether maps v ↦ g·v^(p^j) were admitted.
     method, limit : str, str or None
         How it was decided; what was hit if the group may be larger.
+    base_field : Field or None
+        Where the planes needed a larger field than that of the data: the
+        field of the data, over which all these collineations are defined.
     """
 
     configuration: Configuration
@@ -114,7 +117,8 @@ class CollineationGroup:
     semilinear: bool
     method: str
     limit: str | None = None
-    seed: int = field(default=0)
+    seed: int = 0
+    base_field: Field | None = None
 
     @property
     def kernel_dimension(self) -> int:
@@ -140,7 +144,7 @@ class CollineationGroup:
         The permutations are those over every extension as well (see
         `trivector.symmetry.search`).
         """
-        return self.configuration.field.name
+        return (self.base_field or self.configuration.field).name
 
     @cached_property
     def plane_orbits(self) -> tuple[tuple[int, ...], ...]:
@@ -221,6 +225,7 @@ def collineations(
     semilinear: bool = False,
     fixing: Sequence[int] = (),
     predicate: Predicate | None = None,
+    conjugation: Sequence[int] | None = None,
     limit: int = MAX_STEPS,
     seed: int = 0,
 ) -> CollineationGroup:
@@ -236,6 +241,9 @@ def collineations(
         Only those that keep each of these planes.
     predicate : callable, optional
         Only linear maps g (n×n matrices) with a property that a subgroup has.
+    conjugation : sequence of int, optional
+        A permutation of the planes, all different, with which every map that
+        has the property commutes on the planes.
     limit : int
         The largest number of partial images that are tried.
     seed : int
@@ -261,7 +269,7 @@ def collineations(
     >>> group.order_on_planes, group.kernel_dimension, group.order
     (168, 6, None)
     """
-    planes = DistinctPlanes(configuration)
+    planes = DistinctPlanes(configuration, conjugation)
     k = planes.field
     if semilinear and k.order is None:
         raise UsageError(f"semilinear maps need a finite field, not {k.name}; leave them out")

@@ -1,7 +1,7 @@
 """Are two configurations projectively equivalent? The proof, or what tells them apart."""
 
 from collections import Counter
-from collections.abc import Callable
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from random import Random
 from typing import Any
@@ -107,6 +107,7 @@ def compare_configurations(
     *,
     semilinear: bool = False,
     predicate: Predicate | None = None,
+    conjugations: tuple[Sequence[int], Sequence[int]] | None = None,
     limit: int = MAX_STEPS,
     seed: int = 0,
 ) -> Comparison:
@@ -121,6 +122,9 @@ def compare_configurations(
         Over F_q: admit v ↦ g·v^(p^j) as well.
     predicate : callable, optional
         A further condition on the n×n matrix.
+    conjugations : pair of sequences of int, optional
+        Permutations of the planes of the first and of the second, all
+        different, which every matrix with that property carries to each other.
     limit : int
         The largest number of partial images that are tried.
     seed : int
@@ -157,14 +161,15 @@ def compare_configurations(
         return Comparison(
             k, False, False, None, difference, "an invariant of collineations", seed=seed
         )
-    target = DistinctPlanes(second)
+    before, after = conjugations or (None, None)
+    target = DistinctPlanes(second, after)
     powers = [0]
     if semilinear and k.order is not None:
         powers += [j for j in range(1, 64) if k.characteristic**j < k.order]
     steps, undecided, invariant_only = 0, "", True
     for power in powers:
         source = DistinctPlanes(
-            Configuration(tuple(frobenius_image(plane, power) for plane in first.planes))
+            Configuration(tuple(frobenius_image(plane, power) for plane in first.planes)), before
         )
         search = Search(Base(source), target, predicate=predicate, limit=limit, rng=Random(seed))
         try:

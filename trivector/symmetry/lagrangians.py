@@ -1,14 +1,16 @@
 """Collineations of a subspace of ∧³V, through the planes in it."""
 
 from collections import Counter
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass, replace
+from math import lcm
 from typing import Any
 
 from trivector.configurations import Configuration
-from trivector.errors import UndecidedError
+from trivector.errors import EntryError, UndecidedError
 from trivector.exterior.products import exterior_cube
 from trivector.fields.linear import rank, row_space, unit_rows
+from trivector.fields.protocol import Field
 from trivector.sections import Limits, LinearSection, SectionReport
 from trivector.sections.study import Progress
 from trivector.subspaces import Subspace
@@ -20,39 +22,60 @@ from trivector.symmetry.collineations import (
     collineations,
 )
 from trivector.symmetry.comparison import Comparison, compare_configurations
+from trivector.symmetry.linear_maps import canonical_matrix
 from trivector.symmetry.search import Predicate
 
 __all__ = ["compare_subspaces", "subspace_collineations"]
 
+_LARGEST_EXTENSION = 1024  # elements: larger fields have no tables, and are slow
+
+
+@dataclass(frozen=True)
+class _Extension:
+    """k ⊂ K with all planes in question over K.
+
+    ``descend`` gives the element of k that an element of K is, or None.
+    """
+
+    base: Field
+    field: Field
+    embed: Callable[[Any], Any]
+    descend: Callable[[Any], Any]
+
+    @property
+    def trivial(self) -> bool:
+        return self.field == self.base
+
+    def of(self, subspace: Subspace) -> Subspace:
+        """K ⊗ L."""
+        if self.trivial:
+            return subspace
+        rows = [[self.embed(x) for x in row] for row in subspace.rows]
+        return Subspace.span(self.field, subspace.n, rows)
+
+    def is_over_base(self, matrix: Any) -> bool:
+        """Whether a multiple of the matrix has its entries in k."""
+        rows = canonical_matrix(self.field, matrix.tolist())
+        return all(self.descend(x) is not None for row in rows for x in row)
+
+    def conjugation(self, configuration: Configuration) -> tuple[int, ...] | None:
+        """The action of x ↦ x^q, q = |k|, on planes over K; None where it is not at hand."""
+        if self.base.order is None:
+            return None
+        planes, q = configuration.planes, self.base.order
+        index = {plane.rows: i for i, plane in enumerate(planes)}
+        return tuple(
+            index[tuple(tuple(x**q for x in row) for row in plane.rows)] for plane in planes
+        )
+
 
 @dataclass(frozen=True)
 class _Planes:
-    """The planes of a finite section over the field of L, and how much they say about L."""
+    """All planes, over K, of a finite section."""
 
-    report: SectionReport
+    subspace: Subspace
     configuration: Configuration
-    all_rational: bool
-    span: bool
-
-    @classmethod
-    def of(cls, report: SectionReport) -> "_Planes | str":
-        """The planes, or the reason why they do not help."""
-        k = report.subspace.field.name
-        if report.infinite:
-            return "the section is infinite: its planes are no finite configuration"
-        if report.planes is None:
-            return f"the planes over {k} are not known: {report.limit or report.method}"
-        if not report.planes:
-            return f"the section has no plane over {k}"
-        configuration = Configuration(report.planes)
-        pluckers = [plane.plucker for plane in report.planes]
-        subspace = report.subspace
-        return cls(
-            report,
-            configuration,
-            report.planes_over_closure == len(report.planes),
-            rank(subspace.field, pluckers, subspace.ambient_dimension) == subspace.dimension,
-        )
+    span: bool  # whether they span the subspace
 
 
 def subspace_collineations(
@@ -63,16 +86,17 @@ def subspace_collineations(
     seed: int = 0,
     on_progress: Progress | None = None,
 ) -> CollineationGroup:
-    """All collineations over the field of L ⊂ ∧³V with ∧³g·L = L.
+    """All collineations over the field k of L ⊂ ∧³V with ∧³g·L = L.
 
-    They permute the planes in L; the group is found among those that permute
-    the planes over the field, and each candidate is asked whether it keeps L
-    unless the planes span L.
+    They permute the planes in L, over an extension K where all these are
+    defined. The group is found among the collineations over K that permute
+    them; each candidate is asked whether it is defined over k, and whether it
+    keeps L unless the planes span L.
 
     Parameters
     ----------
     subspace : Subspace
-        With finitely many planes, at least one of them over the field.
+        With finitely many planes over the closure, at least one.
     limits : Limits, optional
         For the planes.
     limit : int
@@ -83,12 +107,14 @@ def subspace_collineations(
     Returns
     -------
     CollineationGroup
-        Its ``configuration`` holds the planes in L over the field, sorted.
+        Its ``configuration`` holds the planes in L over K, sorted, and
+        ``base_field`` is k if K is larger.
 
     Raises
     ------
     UndecidedError
-        If the planes over the field are not finitely many and at least one.
+        If the planes are not finitely many and at least one, or no field K
+        that can be worked with is known.
 
     Examples
     --------
@@ -97,17 +123,34 @@ def subspace_collineations(
     >>> subspace_collineations(planes.span()).order
     1920
     """
-    planes = _examined(subspace, limits, seed, on_progress)
-    if isinstance(planes, str):
-        raise UndecidedError(f"{planes}; the symmetries of this subspace cannot be found that way")
-    keeps = None if planes.span else _carries(subspace, subspace)
-    group = collineations(planes.configuration, predicate=keeps, limit=limit, seed=seed)
-    how = (
-        "the planes span L"
-        if planes.span
-        else "the planes do not span L, so each matrix was asked whether ∧³g keeps L"
+    k = subspace.field
+    options: dict[str, Any] = {"limits": limits, "seed": seed, "on_progress": on_progress}
+    extension = _splitting([LinearSection(subspace).examine(**options)], k)
+    planes = extension if isinstance(extension, str) else _all_planes(subspace, extension, options)
+    if isinstance(extension, str) or isinstance(planes, str):
+        raise UndecidedError(f"the symmetries of a subspace are found by its planes, but {planes}")
+    conditions: list[Predicate] = []
+    how = "the planes span L"
+    conjugation: Sequence[int] | None = None
+    if not planes.span:
+        conditions.append(_carries(planes.subspace, planes.subspace))
+        how = "the planes do not span L, so each matrix was asked whether ∧³g keeps L"
+    if not extension.trivial:
+        conditions.append(extension.is_over_base)
+        conjugation = extension.conjugation(planes.configuration)
+        how += f"; each was asked whether it is defined over {k.name}"
+    group = collineations(
+        planes.configuration,
+        predicate=_all_of(conditions),
+        conjugation=conjugation,
+        limit=limit,
+        seed=seed,
     )
-    return replace(group, method=f"{group.method}; {how}")
+    return replace(
+        group,
+        method=f"{group.method}; {how}",
+        base_field=None if extension.trivial else k,
+    )
 
 
 def compare_subspaces(
@@ -119,7 +162,7 @@ def compare_subspaces(
     seed: int = 0,
     on_progress: Progress | None = None,
 ) -> Comparison:
-    """Whether some g in GL(V) has ∧³g·L = L′, over the field and over its closure.
+    """Whether some g in GL(V) has ∧³g·L = L′, over the field k and over its closure.
 
     Parameters
     ----------
@@ -134,10 +177,13 @@ def compare_subspaces(
     Returns
     -------
     Comparison
-        Its permutation is one of the planes over the field, sorted. Over the
-        closure a no needs an invariant, or all planes defined over the field
-        (then each collineation is, see `trivector.symmetry.search`). Undecided
-        where the planes over the field say too little.
+        The matrix is over k; the permutation is one of the planes over an
+        extension K over which all of them are defined, sorted. Over the closure
+        a collineation that carries L to L′ carries planes to planes, so it is
+        one over K, or there is one over K with the same permutation
+        (`trivector.symmetry.search`); over k it is looked for among those.
+        Undecided where the planes are infinitely many, or none, or do not
+        determine a collineation.
 
     Raises
     ------
@@ -145,56 +191,128 @@ def compare_subspaces(
     """
     check_same_space(first, second)
     k = first.field
+
+    def answer(
+        equivalent: bool | None, closure: bool | None, why: str | None, how: str, limit: str = ""
+    ) -> Comparison:
+        return Comparison(k, equivalent, closure, None, why, how, limit or None, seed)
+
     if first == second:
-        identity = unit_rows(k, first.n)
-        permutation: tuple[int, ...] = ()
-        planes = _examined(first, limits, seed, on_progress)
-        if not isinstance(planes, str):
-            permutation = tuple(range(len(planes.configuration.planes)))
-        return Comparison(
-            k, True, True, Collineation(permutation, identity), None, "equal subspaces", seed=seed
-        )
+        identity = Collineation((), unit_rows(k, first.n))
+        return replace(answer(True, True, None, "equal subspaces"), collineation=identity)
     difference = _linear_difference(first, second)
     if difference is not None:
-        return Comparison(k, False, False, None, difference, "an invariant", seed=seed)
-    reports = [
-        LinearSection(space).examine(limits=limits, seed=seed, on_progress=on_progress)
-        for space in (first, second)
-    ]
+        return answer(False, False, difference, "an invariant of subspaces")
+    options: dict[str, Any] = {"limits": limits, "seed": seed, "on_progress": on_progress}
+    reports = [LinearSection(space).examine(**options) for space in (first, second)]
     difference = _geometric_difference(*reports)
     if difference is not None:
-        return Comparison(k, False, False, None, difference, "an invariant of sections", seed=seed)
-    difference = _arithmetic_difference(*reports)
-    if difference is not None:
-        return Comparison(
-            k, False, None, None, difference, f"an invariant of sections over {k.name}",
-            "over the closure: planes over extensions are not compared", seed,
-        )  # fmt: skip
-    found = [_Planes.of(report) for report in reports]
-    for one in found:
-        if isinstance(one, str):
-            return Comparison(k, None, None, None, None, "planes in the subspaces", one, seed)
-    one, two = found
-    assert isinstance(one, _Planes)
-    assert isinstance(two, _Planes)
-    carries = None if one.span else _carries(first, second)
-    answer = compare_configurations(
-        one.configuration, two.configuration, predicate=carries, limit=limit, seed=seed
+        return answer(False, False, difference, "an invariant of sections")
+    arithmetic = _arithmetic_difference(*reports)
+    over_k = None if arithmetic is None else False
+    extension = _splitting(reports, k)
+    if isinstance(extension, str):
+        return answer(over_k, None, arithmetic, "planes in the subspaces", extension)
+    one, two = (_all_planes(space, extension, options) for space in (first, second))
+    if isinstance(one, str) or isinstance(two, str):
+        reason = one if isinstance(one, str) else str(two)
+        return answer(over_k, None, arithmetic, "planes in the subspaces", reason)
+
+    def search(conditions: Sequence[Predicate], *, commuting: bool) -> Comparison:
+        actions = [
+            extension.conjugation(one.configuration),
+            extension.conjugation(two.configuration),
+        ]
+        return compare_configurations(
+            one.configuration,
+            two.configuration,
+            predicate=_all_of(conditions),
+            conjugations=(actions[0], actions[1]) if commuting and actions[0] else None,
+            limit=limit,
+            seed=seed,
+        )
+
+    carries = [] if one.span else [_carries(one.subspace, two.subspace)]
+    closed = search(carries, commuting=False)
+    if closed.equivalent is None:
+        return answer(over_k, None, arithmetic, closed.method, closed.limit or "")
+    if closed.equivalent is False:
+        return replace(closed, field=k, over_closure=False)
+    if extension.trivial:
+        return closed
+    over = f"equivalent over {extension.field.name}"
+    if arithmetic is not None:
+        return answer(False, True, arithmetic, f"{over}; an invariant over {k.name}")
+    found = search([*carries, extension.is_over_base], commuting=True)
+    if found.collineation is None:
+        difference = f"no collineation that carries one to the other is defined over {k.name}"
+        return answer(
+            found.equivalent,
+            True,
+            None if found.equivalent is None else difference,
+            f"{over}; {found.method}",
+            found.limit or "",
+        )
+    matrix = tuple(tuple(extension.descend(x) for x in row) for row in found.collineation.matrix)
+    return replace(
+        found, field=k, over_closure=True, collineation=replace(found.collineation, matrix=matrix)
     )
-    if answer.equivalent is not False:
-        return answer
-    # A collineation over the closure carries planes over the field to planes
-    # over the field only if all planes are; then it is one of those searched.
-    closure = False if one.all_rational and two.all_rational else None
-    reason = None if closure is False else "over the closure: not all planes are over the field"
-    return replace(answer, over_closure=closure, limit=reason)
 
 
-def _examined(
-    subspace: Subspace, limits: Limits | None, seed: int, on_progress: Progress | None
+def _splitting(reports: Sequence[SectionReport], k: Any) -> "_Extension | str":
+    """A field over which all planes of the sections are defined, or why none is known."""
+    for report in reports:
+        if report.infinite:
+            return "there are infinitely many planes"
+        if report.points is None:
+            return f"the planes are not known ({report.limit or report.method})"
+        if not report.points:
+            return "there is no plane, over the closure either"
+    points = [point for report in reports for point in report.points or ()]
+    degree = lcm(*(point.degree for point in points))
+    if degree == 1:
+        return _Extension(k, k, lambda x: x, lambda x: x)
+    if k.order is not None:
+        if k.order**degree > _LARGEST_EXTENSION:
+            return f"the planes need the extension of degree {degree} of {k.name}: too large"
+        residue = k.extension(degree)
+        codes = (k.from_code(code) for code in range(k.order))
+        table = {residue.embed(x): x for x in codes}
+        return _Extension(k, residue.field, residue.embed, table.get)
+    fields: list[Any] = []
+    for point in points:
+        if point.degree > 1 and point.residue_field not in fields:
+            fields.append(point.residue_field)
+    if len(fields) > 1 or fields[0] is None:
+        return "the planes are defined over different extensions, whose compositum is not made"
+    larger = fields[0]
+
+    def descend(x: Any) -> Any:
+        try:
+            return k.element(larger.format(x))
+        except EntryError:
+            return None
+
+    return _Extension(k, larger, larger.element, descend)
+
+
+def _all_planes(
+    subspace: Subspace, extension: _Extension, options: dict[str, Any]
 ) -> "_Planes | str":
-    report = LinearSection(subspace).examine(limits=limits, seed=seed, on_progress=on_progress)
-    return _Planes.of(report)
+    larger = extension.of(subspace)
+    report = LinearSection(larger).examine(**options)
+    if report.planes is None or report.planes_over_closure != len(report.planes):
+        return f"not all planes are known over {extension.field.name}"
+    pluckers = [plane.plucker for plane in report.planes]
+    size = subspace.ambient_dimension
+    spans = rank(extension.field, pluckers, size) == subspace.dimension
+    return _Planes(larger, Configuration(report.planes), spans)
+
+
+def _all_of(conditions: Sequence[Predicate]) -> Predicate | None:
+    if not conditions:
+        return None
+    return lambda matrix: all(condition(matrix) for condition in conditions)
 
 
 def _carries(first: Subspace, second: Subspace) -> Predicate:

@@ -35,6 +35,9 @@ class IncidenceColours:
     configuration : Configuration
     multiplicities : sequence of int
         A number for each plane that must be kept, such as how often it occurs.
+    successor : sequence of int, optional
+        A permutation of the planes with which only collineations that commute
+        are asked for.
 
     Notes
     -----
@@ -46,7 +49,12 @@ class IncidenceColours:
     of all vertices.
     """
 
-    def __init__(self, configuration: Configuration, multiplicities: Sequence[int]) -> None:
+    def __init__(
+        self,
+        configuration: Configuration,
+        multiplicities: Sequence[int],
+        successor: Sequence[int] | None = None,
+    ) -> None:
         incidence = Incidence(configuration)
         count = len(configuration.planes)
         self.incidence = incidence
@@ -57,6 +65,7 @@ class IncidenceColours:
             for i in flat.planes:
                 self._neighbours[i].append(vertex)
                 self._neighbours[vertex].append(i)
+        self._successor = successor
         kinds = [(0, m) for m in multiplicities]
         kinds += [(1, 0)] * len(incidence.points) + [(2, 0)] * len(incidence.lines)
         ranks = {kind: rank for rank, kind in enumerate(sorted(set(kinds)))}
@@ -84,6 +93,10 @@ class IncidenceColours:
                 (colour, tuple(sorted([colours[w] for w in neighbours])))
                 for colour, neighbours in zip(colours, self._neighbours, strict=True)
             ]
+            if self._successor is not None:
+                for i, following in enumerate(self._successor):
+                    colour, around = signatures[i]
+                    signatures[i] = (colour, (*around, colours[following]))
             ordered = sorted(signatures)
             distinct = list(dict.fromkeys(ordered))
             ranks = {signature: rank for rank, signature in enumerate(distinct)}

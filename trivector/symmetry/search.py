@@ -58,9 +58,15 @@ class Found:
 
 
 class DistinctPlanes:
-    """The different planes of a configuration, how often each occurs, and their colours."""
+    """The different planes of a configuration, how often each occurs, and their colours.
 
-    def __init__(self, configuration: Configuration) -> None:
+    ``conjugation``, for planes that are all different, is a permutation with
+    which collineations have to commute: the Galois action on them.
+    """
+
+    def __init__(
+        self, configuration: Configuration, conjugation: Sequence[int] | None = None
+    ) -> None:
         self.field: Field = configuration.field
         self.n = configuration.n
         copies: dict[Plane, list[int]] = {}
@@ -70,7 +76,7 @@ class DistinctPlanes:
         self.copies = tuple(tuple(indices) for indices in copies.values())
         self.index = {plane.rows: i for i, plane in enumerate(self.planes)}
         multiplicities = [len(indices) for indices in self.copies]
-        self.colours = IncidenceColours(Configuration(self.planes), multiplicities)
+        self.colours = IncidenceColours(Configuration(self.planes), multiplicities, conjugation)
 
     def __len__(self) -> int:
         return len(self.planes)
