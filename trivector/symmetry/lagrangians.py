@@ -219,15 +219,13 @@ def compare_subspaces(
         return answer(over_k, None, arithmetic, "planes in the subspaces", reason)
 
     def search(conditions: Sequence[Predicate], *, commuting: bool) -> Comparison:
-        actions = [
-            extension.conjugation(one.configuration),
-            extension.conjugation(two.configuration),
-        ]
+        before = extension.conjugation(one.configuration) if commuting else None
+        after = extension.conjugation(two.configuration) if commuting else None
         return compare_configurations(
             one.configuration,
             two.configuration,
             predicate=_all_of(conditions),
-            conjugations=(actions[0], actions[1]) if commuting and actions[0] else None,
+            conjugations=None if before is None or after is None else (before, after),
             limit=limit,
             seed=seed,
         )
