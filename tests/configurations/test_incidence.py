@@ -34,7 +34,10 @@ def all_points(p: int, n: int) -> list[tuple[int, ...]]:
 
 def span_of(rows: Sequence[Sequence[int]], p: int) -> set[tuple[int, ...]]:
     return {
-        tuple(sum(c * x for c, x in zip(factors, column, strict=True)) % p for column in zip(*rows))
+        tuple(
+            sum(c * x for c, x in zip(factors, column, strict=True)) % p
+            for column in zip(*rows, strict=True)
+        )
         for factors in product(range(p), repeat=len(rows))
     }
 

@@ -362,8 +362,7 @@ def solves_the_whole_system(k: Field, configuration: Configuration, images: Any)
     conditions = []
     for plane, image in zip(configuration.planes, images, strict=True):
         for form in kernel(k, configuration.planes[image].rows, 6):
-            for w in plane.rows:
-                conditions.append([f * x for f in form for x in w])
+            conditions += [[f * x for f in form for x in w] for w in plane.rows]
     solutions = kernel(k, conditions, 36)
     assert len(solutions) <= 1
     return any(

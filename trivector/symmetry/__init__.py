@@ -1,6 +1,6 @@
 """Which collineations keep a configuration; are two of them the same?"""
 
-from trivector.symmetry.canonical import CanonicalForm, canonical_form
+from trivector.symmetry.canonical import CanonicalForm, canonical_form, equivalence_classes
 from trivector.symmetry.collineations import Collineation, CollineationGroup, collineations
 from trivector.symmetry.comparison import (
     Comparison,
@@ -19,5 +19,6 @@ __all__ = [
     "compare_configurations",
     "compare_subspaces",
     "distinguishing_invariant",
+    "equivalence_classes",
     "subspace_collineations",
 ]

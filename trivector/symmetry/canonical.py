@@ -1,23 +1,33 @@
 """A canonical representative of a configuration up to collineations."""
 
 from collections.abc import Iterator, Sequence
+from contextlib import suppress
 from dataclasses import dataclass
 from functools import cached_property
+from random import Random
 from typing import Any
 
 from trivector.configurations import Configuration
-from trivector.errors import UsageError
+from trivector.errors import UndecidedError, UsageError
 from trivector.fields.linear import Rows, rank, row_space
 from trivector.fields.protocol import Field
 from trivector.subspaces import Plane
-from trivector.symmetry.collineations import Collineation, orbits
-from trivector.symmetry.linear_maps import canonical_matrix, iter_projective
+from trivector.symmetry.collineations import Collineation, check_same_space, orbits
+from trivector.symmetry.comparison import compare_configurations
+from trivector.symmetry.linear_maps import (
+    MapSystem,
+    canonical_matrix,
+    carrying,
+    find_several_invertible,
+    iter_projective,
+)
 from trivector.symmetry.refinement import Colouring
 from trivector.symmetry.search import DistinctPlanes
 
-__all__ = ["CanonicalForm", "canonical_form"]
+__all__ = ["CanonicalForm", "canonical_form", "equivalence_classes"]
 
-MAX_LEAVES = 20_000
+MAX_LEAVES = 1_000
+_MAPS = 6  # random maps; they generate most groups of linear maps
 
 
 @dataclass(frozen=True)
@@ -93,7 +103,8 @@ def canonical_form(configuration: Configuration, *, limit: int = MAX_LEAVES) -> 
     each of its vectors, they are a frame, and the planes get coordinates. The
     representative is the least of these images among the nodes with the least
     colour traces. Equal images give automorphisms, which prune the tree. Where
-    the points do not suffice, over F_q all points of the planes are tried.
+    the points do not suffice, over F_q all points of the planes are tried, up
+    to linear maps that keep every plane.
 
     Examples
     --------
@@ -104,6 +115,76 @@ def canonical_form(configuration: Configuration, *, limit: int = MAX_LEAVES) -> 
     True
     """
     return _Labelling(configuration, limit).result()
+
+
+def equivalence_classes(
+    configurations: Sequence[Configuration], *, limit: int = MAX_LEAVES
+) -> tuple[tuple[int, ...], ...]:
+    """Sort configurations into classes up to collineations over their field.
+
+    By their canonical forms; those that have none within the limit are
+    compared two by two.
+
+    Parameters
+    ----------
+    configurations : sequence of Configuration
+        Over one field and of one V.
+    limit : int
+        The largest number of frames for one canonical form.
+
+    Returns
+    -------
+    tuple of tuples of int
+        Increasing indices, the classes by their first elements. Exhaustive.
+
+    Raises
+    ------
+    UndecidedError
+        If a comparison is undecided.
+
+    Examples
+    --------
+    >>> from trivector import Configuration, read
+    >>> planes = read("data/twenty-planes.json", field="F_7").planes
+    >>> pairs = [Configuration(planes[i : i + 2]) for i in (0, 3, 4)]
+    >>> triples = [Configuration(planes[:3]), Configuration(planes[5:8])]
+    >>> equivalence_classes([*pairs, *triples], limit=100)
+    ((0, 1, 2), (3, 4))
+    """
+    classes: list[list[int]] = []
+    forms: list[tuple[Plane, ...] | None] = []
+    by_form: dict[tuple[Plane, ...], int] = {}
+    for i, configuration in enumerate(configurations):
+        check_same_space(configurations[0], configuration)
+        form = None
+        with suppress(UsageError):
+            form = canonical_form(configuration, limit=limit).configuration.planes
+        place = None if form is None else by_form.get(form)
+        if place is None:
+            # Whether the limit is hit depends on the order of the planes, so
+            # a class may have members with and without a form.
+            for candidate, members in enumerate(classes):
+                if (form is None or forms[candidate] is None) and _are_equivalent(
+                    configurations, members[0], i
+                ):
+                    place = candidate
+                    break
+        if place is None:
+            place = len(classes)
+            classes.append([])
+            forms.append(form)
+        if form is not None:
+            by_form[form] = place
+            forms[place] = form
+        classes[place].append(i)
+    return tuple(tuple(members) for members in classes)
+
+
+def _are_equivalent(configurations: Sequence[Configuration], i: int, j: int) -> bool:
+    answer = compare_configurations(configurations[i], configurations[j])
+    if answer.equivalent is None:
+        raise UndecidedError(f"configurations {i} and {j}: undecided, {answer.limit}")
+    return answer.equivalent
 
 
 @dataclass
@@ -128,6 +209,7 @@ class _Labelling:
         rows = [row for plane in self._planes.planes for row in plane.rows]
         self._span = row_space(self._field, rows, self._n)
         self._limit = limit
+        self._rng = Random(0)
         self._leaves = 0
         self._best: _Leaf | None = None
         self._seen: dict[tuple[Any, ...], _Leaf] = {}
@@ -177,7 +259,7 @@ class _Labelling:
         invariants = (*invariants, invariant)
         if is_leaf:
             back = depth
-            for matrix, image, order in self._images(frame, single):
+            for matrix, image, order in self._images(frame, colouring, single):
                 back = self._record(
                     _Leaf(path, invariants, image, order, matrix), better=better, back=back
                 )
@@ -268,10 +350,10 @@ class _Labelling:
         return frame if everything or frame.is_rigid() else None
 
     def _images(
-        self, frame: "_Frame | None", single: Sequence[int]
+        self, frame: "_Frame | None", colouring: Colouring, single: Sequence[int]
     ) -> Iterator[tuple[Any, tuple[Any, ...], tuple[int, ...]]]:
         """For a leaf: matrix, sorted images, and the planes in that order."""
-        frames = [frame] if frame is not None else self._all_frames(single)
+        frames = [frame] if frame is not None else self._all_frames(colouring, single)
         k = self._field
         for each in frames:
             images = []
@@ -283,39 +365,82 @@ class _Labelling:
             image = tuple((key, rows) for key, rows, _ in images)
             yield each.matrix(), _Image(image), tuple(i for _, _, i in images)
 
-    def _all_frames(self, single: Sequence[int]) -> Iterator["_Frame"]:
-        """Frames from all points of the planes, these in their definite order, over F_q."""
+    def _all_frames(self, colouring: Colouring, single: Sequence[int]) -> Iterator["_Frame"]:
+        """Frames of points of the planes, which are in a definite order, over F_q.
+
+        All of them, up to linear maps that keep every plane: these do not
+        change the images.
+        """
         k: Any = self._field
         if k.order is None:
             raise UsageError(
                 "the points that the planes share do not span what the planes span, so over "
                 f"{k.name} they give no frame; compare the configurations two by two"
             )
-        elements = [k.from_code(code) for code in range(k.order)]
-        combinations = list(iter_projective(elements, 3))
+        if k.order**2 > self._limit:
+            raise UsageError(
+                "the points that the planes share do not span what the planes span, and "
+                f"{k.name} has more elements than the limit allows; compare two by two"
+            )
+        rows = [plane.rows for plane in self._planes.planes]
+        system = MapSystem(k, self._n, rows, rows)
+        fixing = system.everything
+        for i in range(len(rows)):
+            fixing = system.restrict(fixing, i, i)
+        # The points that there are come first; all planes are marked, so these are in order.
+        basis = _independent(k, self._points(colouring), self._n)
+        yield from self._extend_frame(k, single, basis, fixing)
 
-        def extend(basis: list[Any]) -> Iterator[list[Any]]:
-            if len(basis) == len(self._span):
-                yield basis
-                return
-            for i in single:
-                rows = self._planes.planes[i].rows
-                if rank(k, [*basis, *rows], self._n) == len(basis):
-                    continue
-                for factors in combinations:
-                    vector = tuple(
-                        sum((f * x for f, x in zip(factors, column, strict=True)), k.zero)
-                        for column in zip(*rows, strict=True)
-                    )
-                    if rank(k, [*basis, vector], self._n) > len(basis):
-                        yield from extend([*basis, vector])
-                return
-
-        for basis in extend([]):
+    def _extend_frame(
+        self, k: Any, single: Sequence[int], basis: list[Any], fixing: Any
+    ) -> Iterator["_Frame"]:
+        """Frames that begin with these vectors; ``fixing``: the maps that keep planes and them."""
+        if len(basis) == len(self._span):
             frame = _Frame(k, self._n, basis)
             for i in single:
                 frame.scale_by_rows(frame.move(self._planes.planes[i].rows))
             yield frame
+            return
+        rows = next(
+            self._planes.planes[i].rows
+            for i in single
+            if rank(k, [*basis, *self._planes.planes[i].rows], self._n) > len(basis)
+        )
+        for vector in self._representatives(k, rows, fixing):
+            if rank(k, [*basis, vector], self._n) > len(basis):
+                smaller = carrying(k, fixing, vector, vector, self._n)
+                yield from self._extend_frame(k, single, [*basis, vector], smaller)
+
+    def _representatives(self, k: Any, rows: Rows, fixing: Any) -> list[tuple[Any, ...]]:
+        """The points of a plane, one for each orbit of some invertible maps that keep it.
+
+        Random ones, so that most often they generate all; with fewer there are
+        more representatives than needed, which costs time only.
+        """
+        elements = [k.from_code(code) for code in range(k.order)]
+        points = [self._combination(factors, rows) for factors in iter_projective(elements, 3)]
+        if fixing.nrows() == 1:
+            return points
+        index = {point: i for i, point in enumerate(points)}
+        maps = find_several_invertible(k, fixing, self._n, self._rng, _MAPS)
+        matrix = k.matrix(points, self._n)
+        permutations = []
+        for g in maps:
+            images = (matrix * g.transpose()).tolist()
+            permutations.append([index[_normalised(image)] for image in images])
+        return [points[orbit[0]] for orbit in orbits(permutations, len(points))]
+
+    def _combination(self, factors: Sequence[Any], rows: Rows) -> tuple[Any, ...]:
+        zero = self._field.zero
+        return tuple(
+            sum((f * x for f, x in zip(factors, column, strict=True)), zero)
+            for column in zip(*rows, strict=True)
+        )
+
+
+def _normalised(vector: Sequence[Any]) -> tuple[Any, ...]:
+    leading = next(x for x in vector if x)
+    return tuple(x / leading for x in vector)
 
 
 class _Image(tuple[Any, ...]):

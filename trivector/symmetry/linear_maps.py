@@ -87,6 +87,19 @@ def _null_rows(field: Field, matrix: Any, ncols: int) -> list[list[Any]]:
     return basis
 
 
+def carrying(
+    field: Field, space: Any, first: Sequence[Any], second: Sequence[Any], n: int
+) -> Any | None:
+    """The maps of a space that carry the vector ``first`` to multiples of ``second``."""
+    forms = kernel(field, [second], n)
+    vector = field.matrix([first], n)
+    basis = [_square(field, row, n) for row in space.tolist()]
+    images = [(vector * b.transpose()).tolist()[0] for b in basis]
+    values = field.matrix(forms, n) * field.matrix(images, n).transpose()
+    combinations = _null_rows(field, values, len(basis))
+    return field.matrix(combinations, len(basis)) * space if combinations else None
+
+
 def find_invertible(field: Field, space: Any, n: int, rng: Random) -> Any | None:
     """An invertible n×n matrix of the space, or None if none was found.
 
@@ -106,6 +119,20 @@ def find_invertible(field: Field, space: Any, n: int, rng: Random) -> Any | None
         if candidate.det():
             return candidate
     return None
+
+
+def find_several_invertible(field: Field, space: Any, n: int, rng: Random, count: int) -> list[Any]:
+    """Up to ``count`` random invertible matrices of a space; maybe fewer."""
+    found: list[Any] = []
+    size = space.nrows()
+    for _ in range(_ATTEMPTS):
+        factors = field.matrix([[field.random_element(rng) for _ in range(size)]], size)
+        candidate = _square(field, (factors * space).tolist()[0], n)
+        if candidate.det():
+            found.append(candidate)
+            if len(found) == count:
+                break
+    return found
 
 
 def is_never_invertible(field: Field, space: Any, n: int, rng: Random) -> bool | None:
