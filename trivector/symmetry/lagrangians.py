@@ -13,7 +13,7 @@ from trivector.fields.linear import rank, row_space, unit_rows
 from trivector.fields.protocol import Field
 from trivector.sections import Limits, LinearSection, SectionReport
 from trivector.sections.study import Progress
-from trivector.subspaces import Subspace
+from trivector.subspaces import Plane, Subspace
 from trivector.symmetry.collineations import (
     MAX_STEPS,
     Collineation,
@@ -71,11 +71,17 @@ class _Extension:
 
 @dataclass(frozen=True)
 class _Planes:
-    """All planes, over K, of a finite section."""
+    """All planes, over K, of a finite section: or those over k."""
 
     subspace: Subspace
     configuration: Configuration
     span: bool  # whether they span the subspace
+
+    @classmethod
+    def of(cls, subspace: Subspace, planes: Sequence[Plane]) -> "_Planes":
+        pluckers = [plane.plucker for plane in planes]
+        size = rank(subspace.field, pluckers, subspace.ambient_dimension)
+        return cls(subspace, Configuration(tuple(planes)), size == subspace.dimension)
 
 
 def subspace_collineations(
@@ -125,22 +131,23 @@ def subspace_collineations(
     """
     k = subspace.field
     options: dict[str, Any] = {"limits": limits, "seed": seed, "on_progress": on_progress}
-    extension = _splitting([LinearSection(subspace).examine(**options)], k)
-    planes = extension if isinstance(extension, str) else _all_planes(subspace, extension, options)
-    if isinstance(extension, str) or isinstance(planes, str):
-        raise UndecidedError(f"the symmetries of a subspace are found by its planes, but {planes}")
+    report = LinearSection(subspace).examine(**options)
+    extension, planes, reason = _planes_of([subspace], [report], k, options)
+    if not planes:
+        raise UndecidedError(f"the symmetries of a subspace are found by its planes, but {reason}")
+    (planes_of_it,) = planes
     conditions: list[Predicate] = []
     how = "the planes span L"
     conjugation: Sequence[int] | None = None
-    if not planes.span:
-        conditions.append(_carries(planes.subspace, planes.subspace))
+    if not planes_of_it.span:
+        conditions.append(_carries(planes_of_it.subspace, planes_of_it.subspace))
         how = "the planes do not span L, so each matrix was asked whether ∧³g keeps L"
     if not extension.trivial:
         conditions.append(extension.is_over_base)
-        conjugation = extension.conjugation(planes.configuration)
+        conjugation = extension.conjugation(planes_of_it.configuration)
         how += f"; each was asked whether it is defined over {k.name}"
     group = collineations(
-        planes.configuration,
+        planes_of_it.configuration,
         predicate=_all_of(conditions),
         conjugation=conjugation,
         limit=limit,
@@ -210,13 +217,10 @@ def compare_subspaces(
         return answer(False, False, difference, "an invariant of sections")
     arithmetic = _arithmetic_difference(*reports)
     over_k = None if arithmetic is None else False
-    extension = _splitting(reports, k)
-    if isinstance(extension, str):
-        return answer(over_k, None, arithmetic, "planes in the subspaces", extension)
-    one, two = (_all_planes(space, extension, options) for space in (first, second))
-    if isinstance(one, str) or isinstance(two, str):
-        reason = one if isinstance(one, str) else str(two)
+    extension, planes, reason = _planes_of([first, second], reports, k, options)
+    if not planes:
         return answer(over_k, None, arithmetic, "planes in the subspaces", reason)
+    one, two = planes
 
     def search(conditions: Sequence[Predicate], *, commuting: bool) -> Comparison:
         before = extension.conjugation(one.configuration) if commuting else None
@@ -235,7 +239,9 @@ def compare_subspaces(
     if closed.equivalent is None:
         return answer(over_k, None, arithmetic, closed.method, closed.limit or "")
     if closed.equivalent is False:
-        return replace(closed, field=k, over_closure=False)
+        # Planes over k alone say nothing about collineations over the closure.
+        closure = None if reason else False
+        return replace(closed, field=k, over_closure=closure, limit=reason or None)
     if extension.trivial:
         return closed
     over = f"equivalent over {extension.field.name}"
@@ -294,6 +300,32 @@ def _splitting(reports: Sequence[SectionReport], k: Any) -> "_Extension | str":
     return _Extension(k, larger, larger.element, descend)
 
 
+def _planes_of(
+    spaces: Sequence[Subspace], reports: Sequence[SectionReport], k: Field, options: dict[str, Any]
+) -> tuple[_Extension, list[_Planes], str]:
+    """All planes over an extension; or those over k, if none is known, with the reason.
+
+    Collineations over k permute the planes over k: if they are some, that is
+    enough for an answer over k. No planes: nothing can be said.
+    """
+    trivial = _Extension(k, k, lambda x: x, lambda x: x)
+    extension = _splitting(reports, k)
+    if isinstance(extension, _Extension):
+        found = [_all_planes(space, extension, options) for space in spaces]
+        if not any(isinstance(planes, str) for planes in found):
+            return extension, [p for p in found if isinstance(p, _Planes)], ""
+        reason = next(planes for planes in found if isinstance(planes, str))
+    else:
+        reason = extension
+    if any(report.infinite or not report.planes for report in reports):
+        return trivial, [], reason
+    base = [
+        _Planes.of(space, report.planes or ())
+        for space, report in zip(spaces, reports, strict=True)
+    ]
+    return trivial, base, reason
+
+
 def _all_planes(
     subspace: Subspace, extension: _Extension, options: dict[str, Any]
 ) -> "_Planes | str":
@@ -301,10 +333,7 @@ def _all_planes(
     report = LinearSection(larger).examine(**options)
     if report.planes is None or report.planes_over_closure != len(report.planes):
         return f"not all planes are known over {extension.field.name}"
-    pluckers = [plane.plucker for plane in report.planes]
-    size = subspace.ambient_dimension
-    spans = rank(extension.field, pluckers, size) == subspace.dimension
-    return _Planes(larger, Configuration(report.planes), spans)
+    return _Planes.of(larger, report.planes)
 
 
 def _all_of(conditions: Sequence[Predicate]) -> Predicate | None:
