@@ -96,8 +96,10 @@ def circle_picture(incidence: Incidence, classes: PlaneClasses) -> "Figure":
     axes.set_axis_off()
     axes.set_aspect("equal")
     labels = _labels(configuration)
-    longest = max(len(label) for label in labels)
-    reach = 1.12 + 0.031 * longest
+    size = 9 if len(labels) <= 30 else 6
+    longest = max(_text_width(label, size) for label in labels)
+    # Labels begin at 1.07 and end before the edge, 3.5 inches from the centre.
+    reach = 1.07 / (0.97 - longest / (_WIDTH / 2))
     axes.set_xlim(-reach, reach)
     axes.set_ylim(-reach, reach)
 
@@ -120,7 +122,6 @@ def circle_picture(incidence: Incidence, classes: PlaneClasses) -> "Figure":
                   markeredgewidth=1.6, zorder=4)  # fmt: skip
         axes.text(x, y, numbers[id(hub)], ha="center", va="center_baseline", fontsize=7,
                   color=_INK, zorder=5)  # fmt: skip
-    size = 9 if len(labels) <= 30 else 6
     for position, group in enumerate(classes.groups):
         colour = _COLOURS[position % len(_COLOURS)]
         for i in group:
@@ -159,6 +160,13 @@ def _labels(configuration: Configuration) -> list[str]:
         text = str(i) if not label or label == str(i) else f"{i}  {label}"
         result.append(text if len(text) <= _LONGEST_LABEL else text[: _LONGEST_LABEL - 1] + "…")
     return result
+
+
+def _text_width(text: str, size: int) -> float:
+    """In inches."""
+    from matplotlib.textpath import TextPath
+
+    return float(TextPath((0, 0), text, size=size).get_extents().width) / 72
 
 
 def _plane_angles(classes: PlaneClasses) -> dict[int, float]:
@@ -329,7 +337,8 @@ def matrix_picture(incidence: Incidence, classes: PlaneClasses) -> "Figure":
     height = row_height * count + 0.95
     edge = 0.25 if cell > 0.06 else 0.0
     labels = _labels(configuration)
-    left = 0.35 + 0.072 * max(len(label) for label in labels)
+    size = 8 if count <= 40 else 6
+    left = 0.2 + max(_text_width(label, size) for label in labels)
     width = max(left + cell * columns + 0.4, 5.2)
     figure = _new_figure(width, height)
     axes = figure.add_axes(
@@ -351,7 +360,6 @@ def matrix_picture(incidence: Incidence, classes: PlaneClasses) -> "Figure":
         )
     axes.set_xlim(0, columns)
     axes.set_ylim(count, 0)
-    size = 8 if count <= 40 else 6
     axes.set_yticks([p + 0.5 for p in range(count)], [labels[i] for i in order], fontsize=size)
     axes.set_xticks([])
     axes.tick_params(length=0)
