@@ -222,15 +222,3 @@ def test_the_matrix_is_that_of_the_graph() -> None:
     for i, row in enumerate(matrix):
         for j, value in enumerate(row):
             assert value == graph.has_edge(f"p{i}", f"point{j}")
-
-
-@pytest.mark.long
-def test_the_incidence_graph_of_the_twenty_planes_has_5760_automorphisms() -> None:
-    # computed (no text gives it); counted here by networkx
-    import networkx
-
-    graph = Incidence(read("twenty-planes")).graph()
-    matcher = networkx.isomorphism.GraphMatcher(
-        graph, graph, node_match=lambda a, b: a["kind"] == b["kind"]
-    )
-    assert sum(1 for _ in matcher.isomorphisms_iter()) == 5760

@@ -19,7 +19,7 @@ from trivector.subspaces import Plane
 from trivector.symmetry import canonical_form, compare_configurations, equivalence_classes
 
 DATA = Path(__file__).parents[2] / "data"
-FINITE = ["F_3", "F_7", "F_9", "F_101"]
+FINITE = ["F_3", "F_7", "F_101"]
 
 
 def read(name: str, field: str | None = None) -> Configuration:
@@ -53,7 +53,13 @@ def twenty(field: Field) -> tuple[Plane, ...]:
     return tuple(examples.over(field, examples.twenty_planes()))
 
 
-@pytest.mark.parametrize("field", [*FINITE, "Q", {"modulus": "x^2+1"}], ids=str)
+SLOWER = [
+    pytest.param("F_9", marks=pytest.mark.long),
+    pytest.param({"modulus": "x^2+1"}, marks=pytest.mark.long),
+]
+
+
+@pytest.mark.parametrize("field", [*FINITE, "Q", *SLOWER], ids=str)
 def test_images_have_one_label_and_other_subsets_have_others(field: Any) -> None:
     k, rng = field_from_spec(field), Random(str(field))
     planes = twenty(k)
@@ -88,7 +94,7 @@ def test_images_of_documents_have_one_label(name: str, field: str | None) -> Non
 
 def test_a_different_field_gives_a_different_label() -> None:
     labels = {canonical_form(Configuration(twenty(field_from_spec(f)))).label for f in FINITE}
-    assert len(labels) == 4
+    assert len(labels) == 3
 
 
 @pytest.mark.parametrize("q", [2, 3])

@@ -44,6 +44,7 @@ def test_the_matrices_keep_the_lagrangian() -> None:
         assert examples.image_of_space(space.field, g.matrix, space) == space
 
 
+@pytest.mark.long
 def test_a_space_larger_than_the_span_of_its_planes_is_asked_for_itself() -> None:
     # L = the span of 16 planes over F_7 and one more trivector: still the
     # same planes, but fewer collineations keep L.
