@@ -249,16 +249,20 @@ def _meets(
     for rows in annihilators:
         starts.append(starts[-1] + len(rows))
     found: dict[Rows, tuple[int, ...]] = {}
-    given = dict.fromkeys(spaces)
+    given = {rows: i for i, rows in enumerate(spaces)}
     frontier = list(given)
     while frontier:
         new: dict[Rows, None] = {}
         members: dict[Rows, tuple[int, ...]] = {}
         for flat, blocks in _evaluate(conditions, starts, frontier, field, n):
             around = []
+            # Of two given spaces the meet is found once; a line has no smaller meet but 0.
+            skip = given.get(flat, -1 if len(flat) > 1 else len(spaces))
             for k, block in enumerate(blocks):
                 if not any(any(row) for row in block):
                     around.append(k)
+                    continue
+                if k <= skip:
                     continue
                 coefficients = kernel(field, block, len(flat))
                 if coefficients:
