@@ -178,6 +178,27 @@ def test_frobenius_is_a_symmetry_of_planes_over_the_prime_field() -> None:
     check_literally(semilinear)
 
 
+@pytest.mark.parametrize(
+    ("family", "on_planes", "kernel"),
+    [
+        # classical: GL(5,2) on the lines of P^4, translations along the point
+        (0, 31 * 30 * 28 * 24 * 16, 2**5),
+        # GL(4,2) on the points of P³
+        (3, 15 * 14 * 12 * 8, 1),
+        # GL(3,2) on the seven conics and the nucleus plane
+        (4, 168, 1),
+    ],
+)
+def test_infinite_families_have_their_classical_groups_over_f2(
+    family: int, on_planes: int, kernel: int
+) -> None:
+    lagrangian = examples.families()[family].lagrangian(prime_field(2))
+    planes = trivector.LinearSection(lagrangian).examine().planes
+    assert planes is not None
+    group = collineations(Configuration(planes))
+    assert (group.order_on_planes, group.kernel_order) == (on_planes, kernel)
+
+
 # Small cases by brute force
 
 

@@ -27,6 +27,7 @@ from trivector.symmetry.search import Predicate
 
 __all__ = ["compare_subspaces", "subspace_collineations"]
 
+_LARGEST_DEGREE = 4  # of residue fields that are compared
 _LARGEST_EXTENSION = 1024  # elements: larger fields have no tables, and are slow
 
 
@@ -398,4 +399,31 @@ def _arithmetic_difference(first: SectionReport, second: SectionReport) -> str |
     )
     if here != there:
         return f"degrees and multiplicities of the closed points: {here} and {there}"
+    one, two = (
+        [p for p in r.points or () if 1 < p.degree <= _LARGEST_DEGREE] for r in (first, second)
+    )
+    for point in [*one, *two]:
+        counts = [
+            sum(
+                other.degree == point.degree
+                and other.multiplicity == point.multiplicity
+                and _same_field(point.residue_field, other.residue_field)
+                for other in points
+            )
+            for points in (one, two)
+        ]
+        if counts[0] != counts[1]:
+            name = point.residue_field.name if point.residue_field else "?"
+            return f"closed points with residue field {name}: {counts[0]} and {counts[1]}"
     return None
+
+
+def _same_field(first: Any, second: Any) -> bool:
+    """Whether two residue fields of the same degree are isomorphic; unknown ones count as alike.
+
+    Over a finite field they are; otherwise exactly if the modulus of one has a
+    root in the other.
+    """
+    if first is None or second is None or first == second or first.order is not None:
+        return True
+    return len(first.factor([first.element(c) for c in second.modulus])[0][0]) == 2
