@@ -91,11 +91,14 @@ def test_the_group_is_asked_over_another_field_and_with_planes_fixed(run: Run) -
 
 def test_semilinear_generators_name_their_power_of_frobenius(run: Run, tmp_path: Path) -> None:
     field = field_from_spec("F_9")
-    planes = [plane.to_entries() for plane in examples.over(field, examples.twenty_planes())]
+    planes = [plane.to_entries() for plane in examples.over(field, examples.twenty_planes()[:5])]
     path = written(tmp_path / "p.json", "planes", "F_9", planes)
+    linear = json.loads(run("symmetries", path, "--json")[1])
     code, out, _ = run("symmetries", path, "--semilinear", "--json")
     data = json.loads(out)
-    assert (code, data["order"], data["semilinear"]) == (0, 3840, True)
+    assert (code, data["semilinear"]) == (0, True)
+    # Frobenius keeps each plane, so the group on the planes is the same.
+    assert data["order_on_planes"] == linear["order_on_planes"]
     assert [g.get("frobenius") for g in data["generators"]].count(1) == 1
     assert "after x ↦ x^(3^1)" in run("symmetries", path, "--semilinear")[1]
 

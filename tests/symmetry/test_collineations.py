@@ -175,6 +175,7 @@ def test_frobenius_is_a_symmetry_of_planes_over_the_prime_field() -> None:
     planes = Configuration(twenty(field).planes[1:8])
     linear, semilinear = collineations(planes), collineations(planes, semilinear=True)
     assert semilinear.order == 2 * linear.order
+    assert semilinear.order_on_planes == linear.order_on_planes == generated(semilinear)
     check_literally(semilinear)
 
 

@@ -126,6 +126,7 @@ def test_equivalence_over_q_and_over_the_closure_are_told_apart() -> None:
     assert compare_subspaces(one, same).equivalent is not False
 
 
+@pytest.mark.long
 def test_planes_over_an_extension_give_the_group_over_the_small_field() -> None:
     # The cyclic Lagrangian modulo 2: closed points of degrees 2, 10, 10
     # (computed), 22 planes over F_1024 with the group M22 of order 443520. Over
@@ -142,6 +143,25 @@ def test_planes_over_an_extension_give_the_group_over_the_small_field() -> None:
         assert all(k.format(x) in (0, 1) for row in g.matrix for x in row)
         matrix = [[space.field.element(k.format(x)) for x in row] for row in g.matrix]
         assert examples.image_of_space(space.field, matrix, space) == space
+
+
+def test_two_conjugate_planes_leave_the_group_undecided_and_say_so() -> None:
+    # Two disjoint planes conjugate over F_4: the maps that keep both are not
+    # determined by them, and those over F_2 among them are not counted.
+    field = prime_field(2)
+    residue = field.extension(2)
+    rows = [[residue.field.zero] * 6 for _ in range(3)]
+    for i in range(3):
+        rows[i][i], rows[i][i + 3] = residue.field.one, residue.root
+    vector = trivector.Trivector.from_vectors(residue.field, rows).coordinates
+    parts = [[residue.field.coefficients(x)[j] for x in vector] for j in range(2)]
+    space = Subspace.span(field, 6, parts)
+    points = trivector.LinearSection(space).examine().points
+    assert points is not None
+    assert [point.degree for point in points] == [2]
+    group = subspace_collineations(space)
+    assert (group.order, group.order_on_planes, group.exhaustive) == (None, None, False)
+    assert "do not determine" in str(group.limit) or "one of several maps" in str(group.limit)
 
 
 @pytest.mark.long

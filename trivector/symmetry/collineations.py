@@ -89,15 +89,16 @@ class CollineationGroup:
         Planes whose common stabiliser is the kernel.
     basic_orbits : tuple of int
         Lengths of the orbits of the stabiliser chain; their product is
-        ``order_on_planes``. A semilinear group has its index over the linear
-        part as the first of them.
+        ``order_on_planes``. For a semilinear group with permutations that no
+        linear map induces, their index stands first.
     order_on_planes : int or None
         The order of the permutation group on the planes.
     kernel_basis : tuple of n×n matrices
         All linear maps that keep every plane; the invertible ones modulo
         scalars are the kernel. One matrix, the identity: the kernel is trivial.
     kernel_order : int or None
-        Over F_q; None for an infinite kernel and beyond what can be counted.
+        How many collineations (semilinear ones too, if admitted) keep every
+        plane, over F_q; None if infinite, and beyond what can be counted.
     semilinear : bool
         Whether maps v ↦ g·v^(p^j) were admitted.
     method, limit : str, str or None
@@ -296,11 +297,21 @@ def collineations(
         for f in found
     ]
     lengths.reverse()
+    fixing_all = 1  # classes of semilinear maps, modulo linear ones, that keep every plane
     if semilinear and limited is None:
         twisted, power, limited = _semilinear(configuration, fixed, planes, predicate, limit, rng)
         if twisted is not None:
-            generators.append(twisted)
-        lengths.insert(0, _frobenius_order(k) // power)
+            generators.append(
+                Collineation(
+                    planes.permutation(twisted.images, planes),
+                    canonical_matrix(k, twisted.matrix.tolist()),
+                    power,
+                )
+            )
+            index = _frobenius_order(k) // power
+            new = _least_linear_power(search, twisted.images, index)
+            lengths.insert(0, new)
+            fixing_all = index // new
     limited = limited or search.undecided or None
     order = 1
     for length in lengths:
@@ -316,6 +327,8 @@ def collineations(
         kernel_order = None if units is None or k.order is None else units // (k.order - 1)
         if predicate is not None:
             limited = limited or "the planes do not determine a collineation"
+    if kernel_order is not None:
+        kernel_order *= fixing_all
     return CollineationGroup(
         configuration=configuration,
         generators=tuple(generators),
@@ -406,7 +419,7 @@ def _semilinear(
     predicate: Predicate | None,
     limit: int,
     rng: Random,
-) -> tuple[Collineation | None, int, str | None]:
+) -> tuple[Found | None, int, str | None]:
     """A semilinear map whose power j of Frobenius is least, j | r; j = r if there is none.
 
     The powers that occur form a subgroup of ℤ/r, so the least divisor
@@ -427,10 +440,23 @@ def _semilinear(
         if search.undecided:
             return None, r, search.undecided
         if found is not None:
-            permutation = twisted.permutation(found.images, planes)
-            matrix = canonical_matrix(planes.field, found.matrix.tolist())
-            return Collineation(permutation, matrix, power), power, None
+            return found, power, None
     return None, r, None
+
+
+def _least_linear_power(search: Search, images: Sequence[int], index: int) -> int:
+    """The least t ≥ 1 for which the t-th power of a permutation comes from a linear map.
+
+    It divides ``index``: that power is linear itself.
+    """
+    power = list(images)
+    for t in range(1, index):
+        # Linear maps are determined, on the planes, by the images of the base.
+        found = search.first([power[i] for i in search.base.sequence])
+        if found is not None and list(found.images) == power:
+            return t
+        power = [images[i] for i in power]
+    return index
 
 
 def check_same_space(first: Any, second: Any) -> None:
