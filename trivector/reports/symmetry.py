@@ -58,8 +58,10 @@ def _group_lines(group: CollineationGroup) -> Iterable[tuple[str, str]]:
     if group.kernel_dimension:
         counted = "" if group.kernel_order is None else f", order {group.kernel_order}"
         yield "keeping every plane", f"a group of dimension {group.kernel_dimension}{counted}"
-    else:
+    elif group.kernel_order == 1:
         yield "keeping every plane", "the identity only"
+    else:
+        yield "keeping every plane", f"a group of order {group.kernel_order}, semilinear"
     if len(group.plane_orbits) == 1:
         yield "transitive", "yes, on the planes"
     yield "because", group.method

@@ -14,6 +14,7 @@ from trivector.fields.protocol import Field
 from trivector.subspaces import Plane
 from trivector.symmetry.collineations import Collineation, check_same_space, orbits
 from trivector.symmetry.comparison import compare_configurations
+from trivector.symmetry.frames import Frame, Image, independent, normalised
 from trivector.symmetry.linear_maps import (
     MapSystem,
     canonical_matrix,
@@ -334,13 +335,13 @@ class _Labelling:
             flats[by_colour[c][0]].flat.rows[0] for c in sorted(by_colour) if len(by_colour[c]) == 1
         ]
 
-    def _frame(self, colouring: Colouring, single: Sequence[int]) -> "_Frame | None":
+    def _frame(self, colouring: Colouring, single: Sequence[int]) -> "Frame | None":
         """A frame of the points and planes that are marked so far, if they make one."""
         points = self._points(colouring)
-        basis = _independent(self._field, points, self._n)
+        basis = independent(self._field, points, self._n)
         if len(basis) < len(self._span):
             return None
-        frame = _Frame(self._field, self._n, basis)
+        frame = Frame(self._field, self._n, basis)
         for point in points:
             frame.scale_by_point(point)
         for i in single:
@@ -350,7 +351,7 @@ class _Labelling:
         return frame if everything or frame.is_rigid() else None
 
     def _images(
-        self, frame: "_Frame | None", colouring: Colouring, single: Sequence[int]
+        self, frame: "Frame | None", colouring: Colouring, single: Sequence[int]
     ) -> Iterator[tuple[Any, tuple[Any, ...], tuple[int, ...]]]:
         """For a leaf: matrix, sorted images, and the planes in that order."""
         frames = [frame] if frame is not None else self._all_frames(colouring, single)
@@ -363,9 +364,9 @@ class _Labelling:
                 images.append(((len(self._planes.copies[i]), key), rows, i))
             images.sort(key=lambda item: item[0])
             image = tuple((key, rows) for key, rows, _ in images)
-            yield each.matrix(), _Image(image), tuple(i for _, _, i in images)
+            yield each.matrix(), Image(image), tuple(i for _, _, i in images)
 
-    def _all_frames(self, colouring: Colouring, single: Sequence[int]) -> Iterator["_Frame"]:
+    def _all_frames(self, colouring: Colouring, single: Sequence[int]) -> Iterator["Frame"]:
         """Frames of points of the planes, which are in a definite order, over F_q.
 
         All of them, up to linear maps that keep every plane: these do not
@@ -388,15 +389,15 @@ class _Labelling:
         for i in range(len(rows)):
             fixing = system.restrict(fixing, i, i)
         # The points that there are come first; all planes are marked, so these are in order.
-        basis = _independent(k, self._points(colouring), self._n)
+        basis = independent(k, self._points(colouring), self._n)
         yield from self._extend_frame(k, single, basis, fixing)
 
     def _extend_frame(
         self, k: Any, single: Sequence[int], basis: list[Any], fixing: Any
-    ) -> Iterator["_Frame"]:
+    ) -> Iterator["Frame"]:
         """Frames that begin with these vectors; ``fixing``: the maps that keep planes and them."""
         if len(basis) == len(self._span):
-            frame = _Frame(k, self._n, basis)
+            frame = Frame(k, self._n, basis)
             for i in single:
                 frame.scale_by_rows(frame.move(self._planes.planes[i].rows))
             yield frame
@@ -427,7 +428,7 @@ class _Labelling:
         permutations = []
         for g in maps:
             images = (matrix * g.transpose()).tolist()
-            permutations.append([index[_normalised(image)] for image in images])
+            permutations.append([index[normalised(image)] for image in images])
         return [points[orbit[0]] for orbit in orbits(permutations, len(points))]
 
     def _combination(self, factors: Sequence[Any], rows: Rows) -> tuple[Any, ...]:
@@ -436,116 +437,3 @@ class _Labelling:
             sum((f * x for f, x in zip(factors, column, strict=True)), zero)
             for column in zip(*rows, strict=True)
         )
-
-
-def _normalised(vector: Sequence[Any]) -> tuple[Any, ...]:
-    leading = next(x for x in vector if x)
-    return tuple(x / leading for x in vector)
-
-
-class _Image(tuple[Any, ...]):
-    """Sorted images of the planes, compared by their keys: rows need no order."""
-
-    __slots__ = ()
-
-    def _keys(self) -> tuple[Any, ...]:
-        return tuple(key for key, _ in self)
-
-    def __lt__(self, other: Any) -> bool:
-        return bool(self._keys() < other._keys())
-
-    def __eq__(self, other: object) -> bool:
-        return isinstance(other, _Image) and self._keys() == other._keys()
-
-    def __hash__(self) -> int:
-        return hash(self._keys())
-
-
-class _Frame:
-    """Coordinates with respect to some independent vectors, with a scale for each of them.
-
-    ``basis`` may span less than V; it is completed in any way, which the
-    planes in its span do not notice.
-    """
-
-    def __init__(self, field: Field, n: int, basis: Sequence[Sequence[Any]]) -> None:
-        self._field = field
-        self._n = n
-        self._size = len(basis)
-        units = [[field.one if i == j else field.zero for j in range(n)] for i in range(n)]
-        whole = _independent(field, [*basis, *units], n)
-        # Rows times this matrix are coordinates in the basis.
-        self._inverse = _inverse(field, whole, n)
-        self._component = list(range(self._size))
-        self._scale = [field.one] * n
-
-    def move(self, rows: Sequence[Sequence[Any]]) -> Rows:
-        """Canonical rows in the coordinates of the basis, not yet scaled."""
-        reduced, size = (self._field.matrix(rows, self._n) * self._inverse).rref()
-        return tuple(tuple(row) for row in reduced.tolist()[:size])
-
-    def scale_by_point(self, point: Sequence[Any]) -> None:
-        """Make coordinates of a point equal where no scale connects them yet."""
-        self.scale_by_rows(self.move([point]))
-
-    def scale_by_rows(self, rows: Rows) -> None:
-        """Make entries of canonical rows 1 where no scale connects their column to the pivot."""
-        for row in rows:
-            pivot = next(j for j, x in enumerate(row) if x)
-            for column in range(pivot + 1, self._size):
-                if row[column] and self._component[column] != self._component[pivot]:
-                    self._connect(pivot, column, row[column])
-
-    def _connect(self, pivot: int, column: int, entry: Any) -> None:
-        # The entry becomes entry·scale[column]/scale[pivot].
-        factor = self._scale[pivot] / (entry * self._scale[column])
-        old, new = self._component[column], self._component[pivot]
-        for j in range(self._size):
-            if self._component[j] == old:
-                self._component[j] = new
-                self._scale[j] = self._scale[j] * factor
-
-    def is_rigid(self) -> bool:
-        """Whether the scales are determined up to a common factor."""
-        return len(set(self._component)) <= 1
-
-    def rescale(self, rows: Rows) -> Rows:
-        """Canonical rows in the scaled coordinates."""
-        result = []
-        for row in rows:
-            pivot = next(j for j, x in enumerate(row) if x)
-            inverse = self._field.one / self._scale[pivot]
-            result.append(
-                tuple(x * s * inverse if x else x for x, s in zip(row, self._scale, strict=True))
-            )
-        return tuple(result)
-
-    def matrix(self) -> Any:
-        """The matrix, acting on columns, of the change to these coordinates."""
-        rows = [
-            [x * s for x, s in zip(row, self._scale, strict=True)] for row in self._inverse.tolist()
-        ]
-        return self._field.matrix(rows, self._n).transpose()
-
-
-def _independent(field: Field, vectors: Sequence[Sequence[Any]], n: int) -> list[Sequence[Any]]:
-    """The vectors that do not depend on those before them: pivot columns, one reduction."""
-    if not vectors:
-        return []
-    reduced, size = field.matrix(vectors, n).transpose().rref()
-    chosen, column = [], 0
-    for row in range(size):
-        while not reduced[row, column]:
-            column += 1
-        chosen.append(vectors[column])
-        column += 1
-    return chosen
-
-
-def _inverse(field: Field, rows: Sequence[Sequence[Any]], n: int) -> Any:
-    augmented = [
-        [*row, *(field.one if i == j else field.zero for j in range(n))]
-        for i, row in enumerate(rows)
-    ]
-    reduced, _ = field.matrix(augmented, 2 * n).rref()
-    return field.matrix([row[n:] for row in reduced.tolist()], n)
