@@ -2,5 +2,19 @@
 
 from trivector.configurations.configuration import Configuration
 from trivector.configurations.examination import Examination
+from trivector.configurations.incidence import Incidence, SharedFlat
+from trivector.configurations.meeting import (
+    enumerate_maximal_families,
+    exchange_graph,
+    meeting_graph,
+)
 
-__all__ = ["Configuration", "Examination"]
+__all__ = [
+    "Configuration",
+    "Examination",
+    "Incidence",
+    "SharedFlat",
+    "enumerate_maximal_families",
+    "exchange_graph",
+    "meeting_graph",
+]
