@@ -7,7 +7,7 @@ components. Source: "On Morin configurations of higher length", 2019, arXiv
 1903.07480.
 """
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from itertools import combinations
 from random import Random
@@ -16,6 +16,7 @@ from typing import Any
 from trivector.errors import FieldError, UsageError
 from trivector.exterior.products import minors
 from trivector.families.del_pezzo_surface import PENCILS, DelPezzoSurface, QuadricSpace
+from trivector.families.equations import components_from_text
 from trivector.families.nodal_curves import (
     Component,
     CurveClass,
@@ -126,16 +127,17 @@ def ten_lines(field: Field) -> tuple[Component, ...]:
 
 
 def del_pezzo_configuration(
-    field: Field, components: Sequence[Component] | Form, *, rng: Random | None = None
+    field: Field, components: Sequence[Component] | Form | str, *, rng: Random | None = None
 ) -> DelPezzoConfiguration:
     """The configuration of a nodal curve in |−2K|.
 
     Parameters
     ----------
-    components : sequence of Component, or a form
-        Their classes add up to (6; 2, 2, 2, 2). A plane sextic {(i, j, k):
-        coefficient} with double points at p1, …, p4 may be given instead; at
-        a triple point p_i the exceptional curve E_i is part of C.
+    components : sequence of Component, text, or a form
+        Their classes add up to (6; 2, 2, 2, 2). A text is read by
+        `components_from_text`: ``"E1; L23; x*y-2*z^2"``. A plane sextic
+        {(i, j, k): coefficient} with double points at p1, …, p4 may be given
+        instead; at a triple point p_i the exceptional curve E_i is part of C.
     rng : random.Random, optional
         For the random linear combinations that tell nodes apart; the planes
         do not depend on it, the notation of residue fields may.
@@ -154,10 +156,13 @@ def del_pezzo_configuration(
     >>> twenty.length, twenty.span.is_lagrangian(), twenty.labels[5]
     (20, True, 'node E1.L12')
     """
-    if not isinstance(components, Sequence):
-        components = _components_of_sextic(field, components)
-    curve = nodal_curve(field, components, rng or Random(0))
-    return _configuration(curve)
+    if isinstance(components, str):
+        chosen = components_from_text(field, components)
+    elif isinstance(components, Mapping):
+        chosen = _components_of_sextic(field, components)
+    else:
+        chosen = tuple(components)
+    return _configuration(nodal_curve(field, chosen, rng or Random(0)))
 
 
 def _components_of_sextic(field: Field, form: Form) -> tuple[Component, ...]:
@@ -344,7 +349,10 @@ def _rational_sextic(field: Field, rng: Random) -> dict[tuple[int, int, int], An
     modulo q4, up to a common unit. The curve (q2·q3·a : q1·q3·b : q1·q2·c)
     passes through p_i at both roots of q_i; all such curves are of this form.
     """
-    draw = lambda: field.random_element(rng)  # noqa: E731
+
+    def draw() -> Any:
+        return field.random_element(rng)
+
     quadratics = [[draw() for _ in range(3)] for _ in range(4)]
     unit = [draw(), draw()]
     last = quadratics[3]

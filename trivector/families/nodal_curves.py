@@ -208,8 +208,7 @@ def nodal_curve(field: Field, components: Sequence[Component], rng: Random) -> N
     nodes: list[Node] = []
     for index in range(4):
         nodes.extend(_on_exceptional_curve(field, components, sextic, index))
-    for point in singular_points(field, sextic, rng):
-        nodes.append(_named(field, components, point))
+    nodes.extend(_named(field, components, point) for point in singular_points(field, sextic, rng))
     return NodalCurve(field, tuple(components), sextic, tuple(_numbered(field, nodes)))
 
 
@@ -253,7 +252,7 @@ def _on_exceptional_curve(
 
 def _roots(field: Field, form: Sequence[Any]) -> list[tuple[ResidueRing, tuple[Residue, ...], int]]:
     """The closed points (u : v) of a binary form Σ c_a·u^a·v^b, with exponents."""
-    found = []
+    found: list[tuple[ResidueRing, tuple[Residue, ...], int]] = []
     drop = next(i for i, value in enumerate(reversed(form)) if value)
     rational = ResidueRing(field, [field.zero, field.one])
     if drop:

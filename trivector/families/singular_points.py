@@ -91,7 +91,7 @@ def _functionals(field: Field, sextic: Form, degree: int) -> Any:
     if not field.element(6):
         generators.append(dict(sextic))
     size = len(monomials(degree))
-    rows = []
+    rows: list[list[Any]] = []
     for generator in generators:
         if generator:
             shift = degree - sum(next(iter(generator)))
@@ -171,7 +171,7 @@ class _Algebra:
         if not self.size:
             return []
         field = self.field
-        blocks = [
+        blocks: list[list[Vector]] = [
             [
                 tuple(field.one if i == j else field.zero for j in range(self.size))
                 for i in range(self.size)

@@ -150,8 +150,8 @@ def taylor_part(form: Form, index: int, order: int, field: Field) -> list[Any]:
 def local_vectors(index: int) -> tuple[Exponents, Exponents]:
     """The directions of the two local coordinates at a base point, in k³."""
     first, second = _CHARTS[index][1]
-    unit = lambda i: (int(i == 0), int(i == 1), int(i == 2))  # noqa: E731
-    return unit(first), unit(second)
+    units = monomials(1)
+    return units[first], units[second]
 
 
 def multiplicity(form: Form, index: int, field: Field) -> int:
