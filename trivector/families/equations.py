@@ -15,7 +15,7 @@ from trivector.families.ternary_forms import Exponents, Form, degree_of, monomia
 from trivector.fields.entries import shorten
 from trivector.fields.protocol import Field
 
-__all__ = ["components_from_text", "form_from_text", "form_to_text"]
+__all__ = ["components_from_text", "components_to_text", "form_from_text", "form_to_text"]
 
 _LARGEST_EXPONENT = 6
 _FACTOR = re.compile(r"([0-9]+(?:/[0-9]+)?)|([xyz])(?:(?:\^|\*\*)([0-9]))?")
@@ -121,11 +121,11 @@ def components_from_text(field: Field, text: str) -> tuple[Component, ...]:
 
 
 def components_to_text(field: Field, components: Sequence[Component]) -> str:
-    """As `components_from_text` reads it; every plane curve by its equation."""
+    """As `components_from_text` reads it, without names: equations, and E1, L23."""
     parts = []
     for component in components:
         if component.form is None or re.fullmatch(r"L[1-4]{2}", component.name):
             parts.append(component.name)
         else:
-            parts.append(f"{component.name}: {form_to_text(field, component.form)}")
+            parts.append(form_to_text(field, component.form))
     return "; ".join(parts)
