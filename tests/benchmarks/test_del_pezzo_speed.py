@@ -5,7 +5,8 @@ from typing import Any
 
 import pytest
 
-from trivector.families.del_pezzo import del_pezzo_configuration, random_del_pezzo, ten_lines
+from trivector.families.del_pezzo import del_pezzo_configuration, ten_lines
+from trivector.families.random_del_pezzo import random_del_pezzo
 from trivector.fields import QQ, prime_field
 
 pytestmark = pytest.mark.benchmark

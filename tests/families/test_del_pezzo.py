@@ -14,9 +14,6 @@ from trivector.errors import FieldError, UsageError
 from trivector.families.del_pezzo import (
     DelPezzoConfiguration,
     del_pezzo_configuration,
-    intersection_number,
-    random_classes,
-    random_del_pezzo,
     ten_lines,
 )
 from trivector.families.del_pezzo_surface import DelPezzoSurface, QuadricSpace
@@ -27,6 +24,11 @@ from trivector.families.equations import (
     form_to_text,
 )
 from trivector.families.nodal_curves import member_of_class, nodal_curve, plane_curve
+from trivector.families.random_del_pezzo import (
+    intersection_number,
+    random_classes,
+    random_del_pezzo,
+)
 from trivector.families.residues import ResidueRing
 from trivector.families.singular_points import singular_points
 from trivector.families.small_frames import find_small_frame, in_frame

@@ -14,7 +14,6 @@ from trivector.fields.linear import Rows, kernel
 from trivector.fields.protocol import Field
 
 __all__ = [
-    "BASE_POINTS",
     "Exponents",
     "Form",
     "add",
@@ -22,7 +21,6 @@ __all__ = [
     "evaluate",
     "forms_with_multiplicities",
     "from_coefficients",
-    "local_vectors",
     "monomials",
     "multiplicity",
     "multiply",
@@ -34,11 +32,8 @@ __all__ = [
 Exponents = tuple[int, int, int]
 Form = Mapping[Exponents, Any]
 
-BASE_POINTS = ((1, 0, 0), (0, 1, 0), (0, 0, 1), (1, 1, 1))
-"""The four points p1, …, p4, no three on a line; all such are projectively equivalent."""
-
-# At p_i: the coordinate set to 1, the two local coordinates (u, v), and whether
-# these are measured from 1 (at p4) or from 0.
+# p1, …, p4 = (1:0:0), (0:1:0), (0:0:1), (1:1:1). At p_i: the coordinate set to 1, the two
+# local coordinates (u, v), and whether these are measured from 1 (at p4) or from 0.
 _CHARTS = ((0, (1, 2), False), (1, (0, 2), False), (2, (0, 1), False), (2, (0, 1), True))
 
 
@@ -145,13 +140,6 @@ def taylor_part(form: Form, index: int, order: int, field: Field) -> list[Any]:
         for a, factor in _taylor_terms(exponents, index, order):
             result[a] = result[a] + field.element(factor) * value
     return result
-
-
-def local_vectors(index: int) -> tuple[Exponents, Exponents]:
-    """The directions of the two local coordinates at a base point, in k³."""
-    first, second = _CHARTS[index][1]
-    units = monomials(1)
-    return units[first], units[second]
 
 
 def multiplicity(form: Form, index: int, field: Field) -> int:
