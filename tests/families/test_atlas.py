@@ -13,7 +13,14 @@ from trivector.errors import UsageError
 from trivector.families.atlas import RECIPES, Recipe, atlas_example
 from trivector.families.del_pezzo import del_pezzo_configuration
 from trivector.fields import QQ
-from trivector.reports.atlas import atlas_index, document_of, index_row, main
+from trivector.reports.atlas import (
+    TEN_PLANES,
+    atlas_index,
+    document_of,
+    index_row,
+    main,
+    ten_planes,
+)
 
 ATLAS = Path(__file__).parents[2] / "data" / "atlas"
 
@@ -62,7 +69,25 @@ def test_every_length_from_11_to_20_stands_over_q_with_all_planes_rational() -> 
     # has the construction; the curves with rational nodes were found here.
     assert {r.length for r in RECIPES if r.field_name == "Q"} == set(range(11, 21))
     assert {r.length for r in RECIPES if r.field_name != "Q"} == set(range(11, 21))
-    assert sorted(r.file_name for r in RECIPES) == sorted(p.name for p in ATLAS.glob("*.json"))
+    names = [*(r.file_name for r in RECIPES), TEN_PLANES]
+    assert sorted(names) == sorted(p.name for p in ATLAS.glob("*.json"))
+
+
+@pytest.mark.long
+def test_the_ten_planes_are_made_again_from_their_seed() -> None:
+    assert (ATLAS / TEN_PLANES).read_text(encoding="utf-8") == document_of(ten_planes())
+
+
+def test_the_ten_planes_are_complete_and_their_certificate_holds() -> None:
+    # Every length from 10 on occurs (memory: arXiv 1903.07480); this one is in general position.
+    examination = trivector.read(ATLAS / TEN_PLANES).examine()
+    assert len(examination.planes) == 10
+    assert examination.pairs.point == 45
+    assert examination.lagrangian is True
+    assert examination.complete_over_closure is True
+    assert examination.section.hilbert_function[:5] == (1, 10, 20, 10, 10)
+    certificate = checker.load(json.dumps(certify_examination(examination)))
+    assert all(verdict for _, verdict, _ in checker.Check(certificate).run())
 
 
 @pytest.mark.parametrize("recipe", recipes(all_of_them=True), ids=lambda r: r.file_name)
@@ -77,7 +102,7 @@ def test_entries_over_q_are_short(recipe: Recipe) -> None:
 def test_the_index_is_current() -> None:
     text = (ATLAS / "README.md").read_text(encoding="utf-8")
     assert text == atlas_index(ATLAS)
-    assert text.count("\n| [`length-") == len(RECIPES)
+    assert text.count("\n| [`length-") == len(RECIPES) + 1
 
 
 def test_the_index_refuses_what_is_not_complete(tmp_path: Path) -> None:

@@ -9,16 +9,24 @@ from collections import Counter
 from collections.abc import Sequence
 from itertools import combinations
 from pathlib import Path
+from random import Random
 from typing import Any
 
 from trivector.configurations import Configuration
+from trivector.configurations.ten_planes import random_ten_planes
 from trivector.documents import read
 from trivector.errors import UsageError
 from trivector.families.atlas import RECIPES, AtlasExample, atlas_example
+from trivector.fields.prime import prime_field
 from trivector.sections import LinearSection, SectionReport
 from trivector.subspaces import Subspace
 
-__all__ = ["atlas_index", "document_of", "index_row", "write_atlas"]
+__all__ = ["TEN_PLANES", "atlas_index", "document_of", "index_row", "ten_planes", "write_atlas"]
+
+TEN_PLANES = "length-10-over-f1009.json"
+"""The document of length 10, which no curve of the recipes gives."""
+
+_TEN_PLANES_PRIME, _TEN_PLANES_SEED = 1009, 1
 
 _HEAD = """\
 # Atlas
@@ -44,8 +52,9 @@ def document_of(example: AtlasExample) -> str:
         "field": example.field.to_spec(),
         "dimension": 6,
     }
-    if example.planes:
+    if example.labels:
         entries["labels"] = list(example.labels)
+    if example.planes:
         name = "planes"
         rows: list[Any] = [plane.to_entries() for plane in example.planes]
     else:
@@ -54,6 +63,21 @@ def document_of(example: AtlasExample) -> str:
     head = [f"  {json.dumps(key)}: {json.dumps(value)}" for key, value in entries.items()]
     lines = ",\n".join(f"    {json.dumps(row)}" for row in rows)
     return "{\n" + ",\n".join(head) + f',\n  "{name}": [\n{lines}\n  ]\n}}\n'
+
+
+def ten_planes() -> AtlasExample:
+    """Ten planes in general position over F_1009; a few seconds."""
+    field = prime_field(_TEN_PLANES_PRIME)
+    planes = random_ten_planes(field, Random(_TEN_PLANES_SEED))
+    return AtlasExample(
+        field,
+        f"Complete configuration of length 10 over {field.name}",
+        "constructed here: ten pairwise incident planes in general position, one after the other; "
+        f"random_ten_planes({field.name}, Random({_TEN_PLANES_SEED}))",
+        (),
+        planes,
+        Subspace.span(field, 6, [plane.plucker for plane in planes]),
+    )
 
 
 def _points(configuration: Configuration) -> str:
@@ -119,9 +143,10 @@ def write_atlas(folder: Path) -> list[Path]:
     """Write every entry and the index; the paths, the index last."""
     folder.mkdir(parents=True, exist_ok=True)
     paths = []
-    for recipe in RECIPES:
-        path = folder / recipe.file_name
-        path.write_text(document_of(atlas_example(recipe)), encoding="utf-8")
+    made = {recipe.file_name: atlas_example(recipe) for recipe in RECIPES}
+    for name, example in [*made.items(), (TEN_PLANES, ten_planes())]:
+        path = folder / name
+        path.write_text(document_of(example), encoding="utf-8")
         paths.append(path)
     index = folder / "README.md"
     index.write_text(atlas_index(folder), encoding="utf-8")
