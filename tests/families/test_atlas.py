@@ -65,8 +65,8 @@ def test_every_entry_is_complete_and_its_certificate_holds(recipe: Recipe) -> No
 
 
 def test_every_length_from_11_to_20_stands_over_q_with_all_planes_rational() -> None:
-    # 11 and 12 were open: "On Morin configurations of higher length", 2019, arXiv 1903.07480,
-    # has the construction; the curves with rational nodes were found here.
+    # The construction: "On Morin configurations of higher length", 2019, arXiv 1903.07480; the
+    # curves whose nodes are all rational were found here, by search.
     assert {r.length for r in RECIPES if r.field_name == "Q"} == set(range(11, 21))
     assert {r.length for r in RECIPES if r.field_name != "Q"} == set(range(11, 21))
     names = [*(r.file_name for r in RECIPES), TEN_PLANES]
