@@ -101,9 +101,7 @@ def test_two_jobs_are_nearly_twice_as_fast_as_one() -> None:
         f"\np = 251, {sweep_points(6, 251):,} points: {one:.2f} s and {two:.2f} s, "
         f"ratio {one / two:.2f}; processor time {one_cpu:.2f} s and {two_cpu:.2f} s"
     )
-    if min(idle, idle_share()) < 0.95:
-        pytest.skip("other work on this machine takes processor time from one of the jobs")
-    assert one / two >= 1.7
+    assert one / two >= 1.7, f"{min(idle, idle_share()):.0%} of the processors were idle"
 
 
 def brute_force(space: Subspace) -> int:

@@ -1,33 +1,18 @@
 """The command ``trivector count``: over extensions, or modulo primes."""
 
 import json
-from collections.abc import Callable, Sequence
+from collections.abc import Sequence
 from pathlib import Path
 from typing import Any
 
 import examples
 import pytest
+from commands import Run
 
-from trivector.cli import main
 from trivector.fields import prime_field
 
 ROOT = Path(__file__).parents[2]
 TWENTY = str(ROOT / "data" / "twenty-planes.json")
-
-Run = Callable[..., tuple[int, str, list[str]]]
-
-
-@pytest.fixture
-def run(capsys: pytest.CaptureFixture[str]) -> Run:
-    """Runs the command in this process: exit code, standard output, lines of standard error."""
-
-    def run_command(*argv: str) -> tuple[int, str, list[str]]:
-        code = main(argv)
-        captured = capsys.readouterr()
-        assert "Traceback" not in captured.err
-        return code, captured.out, captured.err.splitlines()
-
-    return run_command
 
 
 def write(path: Path, field: Any, basis: Sequence[Sequence[Any]]) -> str:

@@ -9,11 +9,11 @@ import re
 import signal
 import subprocess
 import sys
-from collections.abc import Callable
 from pathlib import Path
 from typing import Any
 
 import pytest
+from commands import Run
 from faulty import FAULTY, PLANES, Faulty, as_text, document
 from hypothesis import given, settings
 from hypothesis import strategies as st
@@ -29,21 +29,6 @@ MINUS_THREE = str(DATA / "twenty-minus-three.json")
 MOVED = str(DATA / "twenty-one-moved.json")
 F7_SIXTEEN = str(DATA / "f7-sixteen.json")
 SEVEN = str(DATA / "seven-planes-p6.json")
-
-Run = Callable[..., tuple[int, str, list[str]]]
-
-
-@pytest.fixture
-def run(capsys: pytest.CaptureFixture[str]) -> Run:
-    """Runs the command in this process: exit code, standard output, lines of standard error."""
-
-    def run_command(*argv: str) -> tuple[int, str, list[str]]:
-        code = main(argv)
-        captured = capsys.readouterr()
-        assert "Traceback" not in captured.err
-        return code, captured.out, captured.err.splitlines()
-
-    return run_command
 
 
 def process(*argv: str, **options: Any) -> subprocess.CompletedProcess[str]:

@@ -4,32 +4,18 @@ import csv
 import io
 import json
 import sys
-from collections.abc import Callable
 from pathlib import Path
 
 import networkx
 import pytest
+from commands import Run
 
 import trivector
-from trivector.cli import main
 from trivector.configurations import Incidence, meeting_graph
 
 ROOT = Path(__file__).parents[2]
 TWENTY = str(ROOT / "data" / "twenty-planes.json")
 MOVED = str(ROOT / "data" / "twenty-one-moved.json")
-
-Run = Callable[..., tuple[int, str, list[str]]]
-
-
-@pytest.fixture
-def run(capsys: pytest.CaptureFixture[str]) -> Run:
-    def run_command(*argv: str) -> tuple[int, str, list[str]]:
-        code = main(argv)
-        captured = capsys.readouterr()
-        assert "Traceback" not in captured.err
-        return code, captured.out, captured.err.splitlines()
-
-    return run_command
 
 
 def test_the_table_says_what_is_shared(run: Run) -> None:

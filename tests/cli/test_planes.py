@@ -6,7 +6,7 @@ import signal
 import subprocess
 import sys
 import time
-from collections.abc import Callable, Sequence
+from collections.abc import Sequence
 from math import comb
 from pathlib import Path
 from random import Random
@@ -15,8 +15,8 @@ from typing import Any
 import examples
 import oracle
 import pytest
+from commands import Run
 
-from trivector.cli import main
 from trivector.fields import QQ, field_from_spec, prime_field
 from trivector.subspaces import Plane, Subspace
 
@@ -24,21 +24,6 @@ ROOT = Path(__file__).parents[2]
 DATA = ROOT / "data"
 TWENTY = str(DATA / "twenty-planes.json")
 MINUS_THREE = str(DATA / "twenty-minus-three.json")
-
-Run = Callable[..., tuple[int, str, list[str]]]
-
-
-@pytest.fixture
-def run(capsys: pytest.CaptureFixture[str]) -> Run:
-    """Runs the command in this process: exit code, standard output, lines of standard error."""
-
-    def run_command(*argv: str) -> tuple[int, str, list[str]]:
-        code = main(argv)
-        captured = capsys.readouterr()
-        assert "Traceback" not in captured.err
-        return code, captured.out, captured.err.splitlines()
-
-    return run_command
 
 
 def write(path: Path, field: Any, basis: Sequence[Sequence[Any]], **keys: Any) -> str:

@@ -1,16 +1,14 @@
 """The commands ``trivector symmetries`` and ``trivector compare``."""
 
 import json
-from collections.abc import Callable
 from pathlib import Path
 from random import Random
 from typing import Any
 
 import examples
-import pytest
+from commands import Run
 
 import trivector
-from trivector.cli import main
 from trivector.fields import QQ, field_from_spec, prime_field
 from trivector.subspaces import Plane
 
@@ -19,19 +17,6 @@ TWENTY = str(ROOT / "data" / "twenty-planes.json")
 SEVEN = str(ROOT / "data" / "seven-planes-p6.json")
 MOVED = str(ROOT / "data" / "twenty-one-moved.json")
 SEVENTEEN = str(ROOT / "data" / "del-pezzo-seventeen.json")
-
-Run = Callable[..., tuple[int, str, list[str]]]
-
-
-@pytest.fixture
-def run(capsys: pytest.CaptureFixture[str]) -> Run:
-    def run_command(*argv: str) -> tuple[int, str, list[str]]:
-        code = main(argv)
-        captured = capsys.readouterr()
-        assert "Traceback" not in captured.err
-        return code, captured.out, captured.err.splitlines()
-
-    return run_command
 
 
 def written(path: Path, kind: str, field: Any, payload: Any) -> str:
