@@ -326,7 +326,7 @@ class Check:
         ((kind, items),) = document["subject"].items()
         shape(kind in ("planes", "basis", "trivectors"), "subject: planes, basis or trivectors")
         given, self.planes = list(enumerate(listed(items, "subject", 1, 2000))), []
-        self.spend(len(given) * self.size**2 * 12 * self.field.weight, 10 * self.field.degree + 10)
+        self.spend(len(given) * self.size**2 * 12 * self.field.weight, 10)
         if kind == "planes":
             self.planes = [self.plane(x, f"planes[{i}]") for i, x in given]
             self.vectors = [self.plucker(rows) for rows in self.planes]
@@ -374,7 +374,7 @@ class Check:
             good = any(s < most and value % s == 0 and is_prime(value // s) for s in range(1, 1000))
         else:
             k = self.place(evidence.get("place"))
-            self.spend(e**3 * k.order.bit_length() * k.weight)
+            self.spend(e**3 * k.order.bit_length() * k.weight, 0)
             ring = Quotient(k, [k.reduce(c) for c in f])
             images = ring.powers(ring.power(ring.powers()[1], k.order))
             moved = [k.combine(x, k.one, y) for x, y in zip(images, ring.powers(), strict=True)]
@@ -480,9 +480,9 @@ class Check:
         table: list[list[list[Any]]] = []  # x_i times the basis element r, in the next basis
         values = [[point.start for point in points]]  # of the basis elements at the points
         for degree, enough in enumerate(bounds[1:], 1):
-            here = len(values)
-            width = m * here
-            self.spend((width**3 + here * sum((p.degree * p.size) ** 2 for p in points)) * k.weight)
+            here, width = len(values), m * len(values)
+            work = width**3 + here * sum((p.degree * p.size) ** 2 for p in points)
+            self.spend(work * k.weight, 0)
             if degree == len(bounds) - 1:
                 flat = [[c for part in map(Point.flat, points, x) for c in part] for x in values]
                 rank = len(k.echelon(flat, len(flat[0]) if flat else 0))
