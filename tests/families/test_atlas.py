@@ -14,11 +14,13 @@ from trivector.families.atlas import RECIPES, Recipe, atlas_example
 from trivector.families.del_pezzo import del_pezzo_configuration
 from trivector.fields import QQ
 from trivector.reports.atlas import (
+    SYMMETRIC_TEN,
     TEN_PLANES,
     atlas_index,
     document_of,
     index_row,
     main,
+    symmetric_ten,
     ten_planes,
 )
 
@@ -69,7 +71,7 @@ def test_every_length_from_11_to_20_stands_over_q_with_all_planes_rational() -> 
     # curves whose nodes are all rational were found here, by search.
     assert {r.length for r in RECIPES if r.field_name == "Q"} == set(range(11, 21))
     assert {r.length for r in RECIPES if r.field_name != "Q"} == set(range(11, 21))
-    names = [*(r.file_name for r in RECIPES), TEN_PLANES]
+    names = [*(r.file_name for r in RECIPES), *SYMMETRIC_TEN, TEN_PLANES]
     assert sorted(names) == sorted(p.name for p in ATLAS.glob("*.json"))
 
 
@@ -90,6 +92,20 @@ def test_the_ten_planes_are_complete_and_their_certificate_holds() -> None:
     assert all(verdict for _, verdict, _ in checker.Check(certificate).run())
 
 
+@pytest.mark.parametrize("name", SYMMETRIC_TEN)
+def test_ten_rational_planes_over_q_and_over_f3_are_complete_with_a_certificate(name: str) -> None:
+    # Found here by search; every length from 10 on occurs (memory: arXiv 1903.07480).
+    assert (ATLAS / name).read_text("utf-8") == document_of(symmetric_ten(SYMMETRIC_TEN[name]))
+    examination = trivector.read(ATLAS / name).examine()
+    assert len(examination.planes) == examination.pairs.point * 2 // 9 == 10
+    assert examination.lagrangian is True
+    assert examination.complete_over_closure is True
+    assert examination.section.hilbert_function[:5] == (1, 10, 20, 10, 10)
+    assert examination.section.planes_over_closure == 10
+    certificate = checker.load(json.dumps(certify_examination(examination)))
+    assert all(verdict for _, verdict, _ in checker.Check(certificate).run())
+
+
 @pytest.mark.parametrize("recipe", recipes(all_of_them=True), ids=lambda r: r.file_name)
 def test_entries_over_q_are_short(recipe: Recipe) -> None:
     document = json.loads((ATLAS / recipe.file_name).read_text(encoding="utf-8"))
@@ -102,7 +118,7 @@ def test_entries_over_q_are_short(recipe: Recipe) -> None:
 def test_the_index_is_current() -> None:
     text = (ATLAS / "README.md").read_text(encoding="utf-8")
     assert text == atlas_index(ATLAS)
-    assert text.count("\n| [`length-") == len(RECIPES) + 1
+    assert text.count("\n| [`length-") == len(RECIPES) + len(SYMMETRIC_TEN) + 1
 
 
 def test_the_index_refuses_what_is_not_complete(tmp_path: Path) -> None:

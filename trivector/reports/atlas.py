@@ -17,14 +17,28 @@ from trivector.configurations.ten_planes import random_ten_planes
 from trivector.documents import read
 from trivector.errors import UsageError
 from trivector.families.atlas import RECIPES, AtlasExample, atlas_example
+from trivector.families.symmetric import symmetric_planes
+from trivector.fields.names import field_from_spec
 from trivector.fields.prime import prime_field
 from trivector.sections import LinearSection, SectionReport
 from trivector.subspaces import Subspace
 
-__all__ = ["TEN_PLANES", "atlas_index", "document_of", "index_row", "ten_planes", "write_atlas"]
+__all__ = [
+    "SYMMETRIC_TEN",
+    "TEN_PLANES",
+    "atlas_index",
+    "document_of",
+    "index_row",
+    "symmetric_ten",
+    "ten_planes",
+    "write_atlas",
+]
 
 TEN_PLANES = "length-10-over-f1009.json"
 """The document of length 10, which no curve of the recipes gives."""
+
+SYMMETRIC_TEN = {"length-10-over-q.json": "Q", "length-10-over-f3.json": "F_3"}
+"""The documents of ten rational planes that a symmetry of order 5 keeps, and their fields."""
 
 _TEN_PLANES_PRIME, _TEN_PLANES_SEED = 1009, 1
 
@@ -74,6 +88,21 @@ def ten_planes() -> AtlasExample:
         f"Complete configuration of length 10 over {field.name}",
         "constructed here: ten pairwise incident planes in general position, one after the other; "
         f"random_ten_planes({field.name}, Random({_TEN_PLANES_SEED}))",
+        (),
+        planes,
+        Subspace.span(field, 6, [plane.plucker for plane in planes]),
+    )
+
+
+def symmetric_ten(field_name: str) -> AtlasExample:
+    """Ten planes, two and their images under the cycle of e1, …, e5."""
+    field = field_from_spec(field_name)
+    planes = symmetric_planes(field, 10)
+    return AtlasExample(
+        field,
+        f"Complete configuration of length 10 over {field.name}",
+        "constructed here: the planes <e0+e4+e5, e1-e3, e2> and <e0+e5, e1, e4> and their images "
+        "under the cycle e1 -> e2 -> e3 -> e4 -> e5 -> e1",
         (),
         planes,
         Subspace.span(field, 6, [plane.plucker for plane in planes]),
@@ -144,6 +173,7 @@ def write_atlas(folder: Path) -> list[Path]:
     folder.mkdir(parents=True, exist_ok=True)
     paths = []
     made = {recipe.file_name: atlas_example(recipe) for recipe in RECIPES}
+    made |= {name: symmetric_ten(field_name) for name, field_name in SYMMETRIC_TEN.items()}
     for name, example in [*made.items(), (TEN_PLANES, ten_planes())]:
         path = folder / name
         path.write_text(document_of(example), encoding="utf-8")
