@@ -1,0 +1,1 @@
+"""Where do interesting planes and Lagrangians come from? Formulas and random choices."""
