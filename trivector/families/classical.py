@@ -137,12 +137,11 @@ def _of_ruling() -> tuple[Terms, ...]:
     t²·e012 − t·Σ v_k·e_k∧ω + (Σ v_i·e_i)∧*v, where *f_0 = f_1∧f_2 and so on.
     """
     star = {i: (3 + (i + 1) % 3, 3 + (i + 2) % 3) for i in range(3)}
-    pairs = [(i, j) for i in range(3) for j in range(i, 3)]
-    return (
-        {(0, 1, 2): 1},
-        *({(k, i, 3 + i): 1 for i in range(3) if i != k} for k in range(3)),
-        *({(i, *star[j]): 1, (j, *star[i]): 1} for i, j in pairs),
-    )
+    basis: list[Terms] = [{(0, 1, 2): 1}]
+    for i in range(3):
+        basis.append({(i, j, 3 + j): 1 for j in range(3) if j != i})
+        basis += [{(i, *star[j]): 1, (j, *star[i]): 1} for j in range(i, 3)]
+    return tuple(basis)
 
 
 # P^5 as the space of quadratic monomials in three variables, so that the
@@ -283,5 +282,10 @@ CLASSICAL_FAMILIES: dict[str, ClassicalFamily] = {
         ),
     )
 }
-"""The six, by name. In characteristic 2 the Lagrangian of the conics contains one
-plane more than the members: the nucleus plane."""
+"""The six, by name.
+
+In characteristic 2 the Lagrangian of the conics contains one plane more than
+the members, the nucleus plane {u_0u_1, u_0u_2, u_1u_2}; it meets every tangent
+plane in a line, so that the Lagrangian of the tangent planes is the third
+family of that plane.
+"""

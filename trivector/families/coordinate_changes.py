@@ -15,7 +15,7 @@ __all__ = ["Change", "image", "random_change"]
 Change = Sequence[Sequence[Any]]
 """An invertible n×n matrix g over the field; it acts on columns, w ↦ g·w."""
 
-_T = TypeVar("_T", Flat, Subspace)
+_T = TypeVar("_T", bound=Flat | Subspace)
 
 
 def random_change(field: Field, rng: Random, *, n: int = 6, height: int = 2) -> Rows:

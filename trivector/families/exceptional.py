@@ -213,9 +213,7 @@ def _unitary_hyperoval() -> tuple[tuple[_Vector, ...], ...]:
     bits: dict[tuple[_Vector, _Vector], int] = {}
     masks: dict[tuple[_Vector, ...], int] = {}
     for matrix in _unitary_matrices():
-        masks[matrix] = sum(
-            1 << bits.setdefault((x, _times(x, matrix)), len(bits)) for x in points
-        )
+        masks[matrix] = sum(1 << bits.setdefault((x, _times(x, matrix)), len(bits)) for x in points)
 
     def extend(
         chosen: list[tuple[_Vector, ...]], candidates: list[tuple[_Vector, ...]]
@@ -233,8 +231,7 @@ def _unitary_hyperoval() -> tuple[tuple[_Vector, ...], ...]:
                 rest = [
                     other
                     for other in candidates
-                    if not masks[other] & full
-                    and (masks[other] & masks[matrix]).bit_count() == 1
+                    if not masks[other] & full and (masks[other] & masks[matrix]).bit_count() == 1
                 ]
                 found = extend([*chosen, matrix], rest)
                 if found is not None:
