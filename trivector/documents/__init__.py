@@ -2,5 +2,6 @@
 
 from trivector.documents.reading import read
 from trivector.documents.sources import read_text
+from trivector.documents.writing import document_text, to_document
 
-__all__ = ["read", "read_text"]
+__all__ = ["document_text", "read", "read_text", "to_document"]
