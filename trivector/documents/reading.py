@@ -25,7 +25,7 @@ from trivector.fields.entries import shorten
 from trivector.fields.linear import Rows
 from trivector.subspaces import Plane, Subspace
 
-__all__ = ["Document", "read"]
+__all__ = ["Document", "read", "wanted_field"]
 
 Document = Configuration | Subspace | tuple[Trivector, ...]
 
@@ -67,7 +67,7 @@ def read(path: str | Path, *, field: Field | str | None = None) -> Document:
     (20, 'Q')
     """
     name = "standard input" if str(path) == "-" else str(path)
-    wanted = _wanted_field(field)
+    wanted = None if field is None else wanted_field(field)
     text = read_text(path)
     if not text.strip():
         raise DocumentError([f"{name}: empty; give a JSON document or rows of numbers"])
@@ -83,7 +83,8 @@ def read(path: str | Path, *, field: Field | str | None = None) -> Document:
     return document
 
 
-def _wanted_field(field: Field | str | None) -> Field | None:
+def wanted_field(field: Field | str) -> Field:
+    """A field from an object, a name such as ``"F_7"``, or the JSON of a field with a modulus."""
     if not isinstance(field, str):
         return field
     return field_from_spec(parse_json(field, "field") if field.startswith("{") else field)

@@ -153,7 +153,7 @@ class _Equations:
 
 
 def random_lagrangian_through(
-    planes: Sequence[Plane], rng: Random, *, height: int = 1
+    planes: Sequence[Plane], rng: Random, *, height: int = 2
 ) -> Lagrangian:
     """A random Lagrangian that contains the given planes.
 
@@ -205,9 +205,9 @@ def random_lagrangian_through(
 
 
 def random_lagrangian_with_planes(
-    field: Field, count: int, rng: Random, *, height: int = 1
+    field: Field, count: int, rng: Random, *, height: int = 2
 ) -> tuple[Lagrangian, tuple[Plane, ...]]:
-    """A random Lagrangian with planted planes: ``count`` ≤ 6 planes that meet two by two.
+    """A random Lagrangian with planted planes: ``count`` ≤ 7 planes that meet two by two.
 
     Returns
     -------
@@ -217,7 +217,7 @@ def random_lagrangian_with_planes(
     Raises
     ------
     UsageError
-        For more than six planes: beyond, planes cannot be chosen freely, and
+        For more than seven planes: beyond, planes cannot be chosen freely, and
         ``trivector.configurations.random_incident_planes`` searches for them.
 
     Examples
