@@ -15,7 +15,7 @@ from trivector.subspaces import Plane, Subspace
 __all__ = ["has_expected_dimension", "random_cut", "random_incident_planes"]
 
 _CUTS = 6
-# Enough for the section by ten dimensions to be proved empty; more is not asked.
+# Enough to prove that a section by ten dimensions is finite or empty; more is not asked.
 _BRIEF = Limits(max_degree=6, max_primes=2, max_lift_primes=1, max_points=0)
 _ATTEMPTS = 40
 
@@ -107,7 +107,8 @@ def has_expected_dimension(planes: Sequence[Plane], rng: Random, *, height: int 
     """
     space = _orthogonal(planes)
     if space.dimension <= 10:
-        return LinearSection(space).examine(seed=rng.getrandbits(32)).infinite is False
+        report = LinearSection(space).examine(limits=_BRIEF, seed=rng.getrandbits(32))
+        return report.infinite is False
     for _ in range(_CUTS):
         cut = random_cut(space, 10, rng, height=height)
         report = LinearSection(cut).examine(limits=_BRIEF, seed=rng.getrandbits(32))
