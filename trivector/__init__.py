@@ -12,19 +12,21 @@ from importlib import import_module
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
-    from trivector.configurations import Configuration, Examination
+    from trivector.configurations import Configuration, Examination, Incidence
     from trivector.documents import read
     from trivector.errors import TrivectorError
     from trivector.exterior import Trivector
     from trivector.fields import QQ, field_from_spec, prime_field
     from trivector.sections import LinearSection
     from trivector.subspaces import Flat, Lagrangian, Plane, Subspace
+    from trivector.symmetry import canonical_form, collineations, compare_configurations
 
 __all__ = [
     "QQ",
     "Configuration",
     "Examination",
     "Flat",
+    "Incidence",
     "Lagrangian",
     "LinearSection",
     "Plane",
@@ -32,6 +34,9 @@ __all__ = [
     "Trivector",
     "TrivectorError",
     "__version__",
+    "canonical_form",
+    "collineations",
+    "compare_configurations",
     "field_from_spec",
     "prime_field",
     "read",
@@ -44,6 +49,7 @@ _HOMES = {
     "Configuration": "trivector.configurations",
     "Examination": "trivector.configurations",
     "Flat": "trivector.subspaces",
+    "Incidence": "trivector.configurations",
     "Lagrangian": "trivector.subspaces",
     "LinearSection": "trivector.sections",
     "Plane": "trivector.subspaces",
@@ -51,6 +57,9 @@ _HOMES = {
     "Subspace": "trivector.subspaces",
     "Trivector": "trivector.exterior",
     "TrivectorError": "trivector.errors",
+    "canonical_form": "trivector.symmetry",
+    "collineations": "trivector.symmetry",
+    "compare_configurations": "trivector.symmetry",
     "field_from_spec": "trivector.fields",
     "prime_field": "trivector.fields",
     "read": "trivector.documents",

@@ -18,6 +18,7 @@ __all__ = [
     "NotDecomposableError",
     "NotLagrangianError",
     "TrivectorError",
+    "UndecidedError",
     "UsageError",
 ]
 
@@ -62,6 +63,12 @@ class NotLagrangianError(TrivectorError, ValueError):
 
 class BadReductionError(TrivectorError, ZeroDivisionError):
     """Data that cannot be reduced modulo this prime."""
+
+
+class UndecidedError(TrivectorError, RuntimeError):
+    """A question whose answer is not known; the message says what is missing."""
+
+    exit_code = 3
 
 
 class DocumentError(TrivectorError, ValueError):

@@ -126,7 +126,7 @@ def scheme_part(section: Subspace, point: ClosedPoint) -> SchemePart | None:
     if modulus is None or point.plucker is None:
         return None
     if point.multiplicity == 1:
-        return SchemePart(1, list(modulus), _rows_from(point.plucker, section.n), [])
+        return SchemePart(1, list(modulus), _rows_from(point.plucker, section.n, point.degree), [])
     residue = field.residue_field(modulus)
     if residue is None or plane is None:
         return None
@@ -175,13 +175,16 @@ def _part(
     return SchemePart(multiplicity, modulus, rows, nilpotents)
 
 
-def _rows_from(plucker: Sequence[Sequence[Any]], n: int) -> list[Entries]:
-    """Rows of a plane from its Plücker vector, without a division: contractions with two of e_I."""
+def _rows_from(plucker: Sequence[Sequence[Any]], n: int, degree: int) -> list[Entries]:
+    """Rows of a plane from its Plücker vector, without a division: contractions with two of e_I.
+
+    Entries of fewer than ``degree`` coefficients are filled up with zeros.
+    """
     names = subsets(n, 3)
     place = {name: i for i, name in enumerate(names)}
     pivot = next(i for i, entry in enumerate(plucker) if any(entry))
-    zero = [c - c for c in plucker[0]]
-    rows = []
+    zero = [plucker[pivot][0] * 0] * degree
+    rows: list[Entries] = []
     for position in range(3):
         row = []
         for j in range(n):
@@ -190,8 +193,8 @@ def _rows_from(plucker: Sequence[Sequence[Any]], n: int) -> list[Entries]:
             if len(set(name)) < 3:
                 row.append(zero)
                 continue
-            entry = plucker[place[tuple(sorted(name))]]
-            row.append(list(entry) if sort_sign(name) == 1 else [-c for c in entry])
+            entry = [*plucker[place[tuple(sorted(name))]], *zero][:degree]
+            row.append(entry if sort_sign(name) == 1 else [-c for c in entry])
         rows.append(row)
     return rows
 

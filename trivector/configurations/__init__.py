@@ -3,5 +3,21 @@
 from trivector.configurations.configuration import Configuration
 from trivector.configurations.examination import Examination
 from trivector.configurations.growing import has_expected_dimension, random_incident_planes
+from trivector.configurations.incidence import Incidence, SharedFlat
+from trivector.configurations.meeting import (
+    enumerate_maximal_families,
+    exchange_graph,
+    meeting_graph,
+)
 
-__all__ = ["Configuration", "Examination", "has_expected_dimension", "random_incident_planes"]
+__all__ = [
+    "Configuration",
+    "Examination",
+    "Incidence",
+    "SharedFlat",
+    "enumerate_maximal_families",
+    "exchange_graph",
+    "has_expected_dimension",
+    "meeting_graph",
+    "random_incident_planes",
+]

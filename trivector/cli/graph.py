@@ -1,0 +1,149 @@
+"""``trivector graph FILE``: how planes meet, as a table, a graph or a picture."""
+
+import argparse
+import sys
+from pathlib import PurePath
+from typing import Any
+
+from trivector.cli.options import add_common, open_output, write_answer
+from trivector.errors import UsageError
+
+__all__ = ["add_parser", "run"]
+
+_TEXT_FORMATS = ("graphml", "dot", "json", "csv")
+_PICTURES = ("png", "svg", "pdf")
+_SUFFIXES = {"gv": "dot", "xml": "graphml"}
+
+
+def add_parser(verbs: Any) -> None:
+    """Add the verb to the grammar."""
+    parser = verbs.add_parser(
+        "graph",
+        help="meeting graph or incidence graph, as a table, as data or as a picture",
+        description="Which planes meet, and which points, lines and hyperplanes several of them "
+        "share. Without --format and -o a table; the format follows from the name after -o.",
+        allow_abbrev=False,
+    )
+    parser.add_argument("file", metavar="FILE", help="planes, as JSON or plain text; - for stdin")
+    parser.add_argument(
+        "--kind",
+        choices=("incidence", "meeting"),
+        default="incidence",
+        help="planes against what they share (default), or planes that meet",
+    )
+    parser.add_argument(
+        "--format",
+        choices=(*_TEXT_FORMATS, *_PICTURES),
+        help="graphml, dot, json (node-link), csv (the matrix), or a picture",
+    )
+    parser.add_argument(
+        "--picture",
+        choices=("circle", "matrix"),
+        default="circle",
+        help="planes on a circle (default), or the sorted incidence matrix",
+    )
+    parser.add_argument(
+        "--hyperplanes", action="store_true", help="hyperplanes in graphs and matrices as well"
+    )
+    parser.add_argument(
+        "--orbits", action="store_true", help="group the planes of a picture by orbits"
+    )
+    add_common(parser)
+    parser.set_defaults(run=run)
+
+
+def run(arguments: argparse.Namespace) -> int:
+    """Exit code 0."""
+    from trivector.configurations import Configuration, Incidence
+    from trivector.documents import read
+
+    wanted = arguments.format or _format_from_name(arguments.output)
+    # Exact integers have as many digits as they have.
+    sys.set_int_max_str_digits(0)
+    configuration = read(arguments.file, field=arguments.field)
+    if not isinstance(configuration, Configuration):
+        raise UsageError(f'{arguments.file}: graph needs a document of kind "planes"')
+    incidence = Incidence(configuration)
+    if wanted in _PICTURES:
+        _draw(arguments, incidence, wanted)
+    elif wanted is None and not arguments.json:
+        _table(arguments, incidence)
+    else:
+        _write(arguments, incidence, wanted or "json")
+    return 0
+
+
+def _format_from_name(output: str | None) -> str | None:
+    if output is None:
+        return None
+    suffix = PurePath(output).suffix[1:].lower()
+    suffix = _SUFFIXES.get(suffix, suffix)
+    return suffix if suffix in (*_TEXT_FORMATS, *_PICTURES) else None
+
+
+def _table(arguments: argparse.Namespace, incidence: Any) -> None:
+    from trivector.reports import incidence_report
+
+    write_answer(arguments, {}, lambda: incidence_report(incidence))
+
+
+def _write(arguments: argparse.Namespace, incidence: Any, wanted: str) -> None:
+    from trivector.configurations import meeting_graph
+    from trivector.reports import graph_files
+
+    meeting = arguments.kind == "meeting"
+    configuration = incidence.configuration
+    if wanted == "csv":
+        text = (
+            graph_files.meeting_matrix_csv(configuration)
+            if meeting
+            else graph_files.incidence_matrix_csv(incidence, hyperplanes=arguments.hyperplanes)
+        )
+    else:
+        graph = (
+            meeting_graph(configuration)
+            if meeting
+            else incidence.graph(hyperplanes=arguments.hyperplanes)
+        )
+        if wanted == "json":
+            data = {
+                "kind": "graph",
+                "title": configuration.title,
+                "field": configuration.field.to_spec(),
+                "dimension": configuration.n,
+                **graph_files.node_link(graph),
+            }
+            if not meeting:
+                data["shared"] = incidence.to_json()
+            arguments.json = True
+            write_answer(arguments, data, lambda: "")
+            return
+        text = graph_files.dot(graph) if wanted == "dot" else graph_files.graphml(graph)
+    with open_output(arguments) as file:
+        file.write(text)
+
+
+def _draw(arguments: argparse.Namespace, incidence: Any, wanted: str) -> None:
+    from trivector.reports import pictures
+
+    if arguments.output is None:
+        raise UsageError(f"a picture goes to a file; name it with -o, such as -o planes.{wanted}")
+    if arguments.kind == "meeting":
+        raise UsageError("pictures show the incidence graph; leave out --kind meeting")
+    configuration = incidence.configuration
+    if arguments.orbits:
+        from trivector.symmetry import collineations
+
+        group = collineations(configuration, seed=arguments.seed)
+        permutations = [g.permutation for g in group.generators]
+        classes = pictures.PlaneClasses.from_permutations(permutations, len(configuration.planes))
+    else:
+        classes = pictures.PlaneClasses.from_refinement(configuration)
+    draw = pictures.matrix_picture if arguments.picture == "matrix" else pictures.circle_picture
+    figure = draw(incidence, classes)
+    try:
+        pictures.save_picture(figure, arguments.output, wanted)
+    except OSError as error:
+        raise UsageError(
+            f"{arguments.output}: cannot be written ({error.strerror}); name another file"
+        ) from None
