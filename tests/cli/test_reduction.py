@@ -47,7 +47,7 @@ def twenty(request: pytest.FixtureRequest, tmp_path: Path) -> str:
     return str(path)
 
 
-@pytest.mark.parametrize("field", ["F_5", "F_13", "F_9"])
+@pytest.mark.parametrize("field", ["F_5", "F_13", pytest.param("F_9", marks=pytest.mark.long)])
 def test_every_verb_reduces(
     answer: Callable[..., tuple[int, Any]], twenty: str, field: str
 ) -> None:

@@ -150,7 +150,7 @@ def test_the_mean_number_of_planes_is_that_of_all_lagrangians(q: int, size: int)
 
 
 def test_the_large_cell_has_its_share_of_the_lagrangians() -> None:
-    q, size = 2, 3000
+    q, size = 2, 1500
     field, rng = prime_field(q), Random(3)
     large = 0
     for _ in range(size):
@@ -383,6 +383,7 @@ def test_over_f2_the_generic_orbits_have_their_sizes() -> None:
             assert len(sums) == (2 if orbit == "split" else 0)
 
 
+@pytest.mark.long
 def test_a_decomposable_is_uniform_in_its_orbit() -> None:
     rng, size = Random(2), 1395  # [6,3]_2
     counts = Counter(

@@ -44,8 +44,9 @@ def random_incident_planes(
     Raises
     ------
     UsageError
-        If no such planes were found: over F_2, F_3 and F_4 almost always, and
-        for more than about ten planes over any field.
+        If no such planes were found: the smaller the field, the fewer planes,
+        and more than ten, which span a Lagrangian, only by luck; or for more
+        than seven over an infinite field.
 
     Notes
     -----
