@@ -228,6 +228,22 @@ def test_a_document_over_q_may_be_read_over_a_number_field(write: Writer) -> Non
         assert read.planes[0].to_entries() == entries
 
 
+def test_a_document_over_a_number_field_is_reduced_at_a_prime_above_p(write: Writer) -> None:
+    gauss = {"modulus": "x^2+1"}
+    # Modulo 5 a becomes 2, the first root; the row times 5 becomes (0, 0, 1, 0, 2, 0).
+    same = write(document("planes", 0, 2, value=[0, 0, 1, 0, 2, 0], field="F_5"))
+    expected = trivector.read(same)
+    path = write(document("planes", 0, 2, value=["a", 0, "1/5", 0, "a/5", 5], field=gauss))
+    assert trivector.read(path, field="F_5") == expected
+    assert trivector.read(path, field="F_9").field.order == 9
+    for field, words in (("F_7", "over Q(a), a^2+1 = 0; it cannot be read over F_7"),
+                         ("F_2", "multiple root"), ("Q", "cannot be read over Q")):  # fmt: skip
+        with pytest.raises(DocumentError) as refused:
+            trivector.read(path, field=field)
+        (fault,) = refused.value.faults
+        assert words in fault
+
+
 def test_a_document_without_a_field_takes_the_one_that_is_asked_for(write: Writer) -> None:
     path = write(document("field"))
     assert trivector.read(path, field="F_7") == the_three(F7)

@@ -7,7 +7,7 @@ from collections.abc import Sequence
 from typing import NoReturn
 
 from trivector import __version__
-from trivector.cli import compare, count, examine, graph, planes, recheck, symmetries
+from trivector.cli import compare, count, examine, graph, make, planes, recheck, symmetries
 from trivector.errors import DocumentError, TrivectorError, UsageError
 
 __all__ = ["build_parser", "main"]
@@ -34,7 +34,7 @@ def build_parser() -> argparse.ArgumentParser:
     )
     parser.add_argument("--version", action="version", version=f"trivector {__version__}")
     verbs = parser.add_subparsers(title="verbs", metavar="VERB", dest="verb", required=True)
-    for verb in (examine, planes, count, graph, symmetries, compare, recheck):
+    for verb in (examine, planes, count, graph, symmetries, compare, make, recheck):
         verb.add_parser(verbs)
     return parser
 

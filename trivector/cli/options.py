@@ -29,7 +29,7 @@ def add_common(parser: argparse.ArgumentParser) -> None:
     parser.add_argument(
         "--field",
         metavar="F",
-        help="Q, F_q or a field in JSON; needed for plain text, reduces a document over Q",
+        help="Q, F_q or a field in JSON; needed for plain text, reduces a document over Q or Q(a)",
     )
     parser.add_argument("--json", action="store_true", help="write JSON instead of a table")
     parser.add_argument(

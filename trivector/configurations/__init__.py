@@ -2,6 +2,7 @@
 
 from trivector.configurations.configuration import Configuration
 from trivector.configurations.examination import Examination
+from trivector.configurations.growing import has_expected_dimension, random_incident_planes
 from trivector.configurations.incidence import Incidence, SharedFlat
 from trivector.configurations.meeting import (
     enumerate_maximal_families,
@@ -16,5 +17,7 @@ __all__ = [
     "SharedFlat",
     "enumerate_maximal_families",
     "exchange_graph",
+    "has_expected_dimension",
     "meeting_graph",
+    "random_incident_planes",
 ]

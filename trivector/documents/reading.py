@@ -20,12 +20,12 @@ from trivector.documents.syntax import (
 from trivector.errors import DocumentError, TrivectorError
 from trivector.exterior import Trivector
 from trivector.exterior.basis import DIMENSIONS, dimension_from_size
-from trivector.fields import QQ, Field, field_from_spec
+from trivector.fields import Field, field_from_spec
 from trivector.fields.entries import shorten
-from trivector.fields.linear import Rows
+from trivector.fields.places import conversion
 from trivector.subspaces import Plane, Subspace
 
-__all__ = ["Document", "read"]
+__all__ = ["Document", "read", "wanted_field"]
 
 Document = Configuration | Subspace | tuple[Trivector, ...]
 
@@ -46,8 +46,11 @@ def read(path: str | Path, *, field: Field | str | None = None) -> Document:
         An object, a name such as ``"F_7"``, or the JSON of a field with a
         modulus. Required for plain text. A JSON document over ℚ is reduced
         modulo p, each plane and subspace by its lattice of integer points,
-        so that dimensions stay; or extended to a number field. Any other
-        field than the document's own is refused.
+        so that dimensions stay; or extended to a number field. One over a
+        number field Q(a) is reduced to a finite field of characteristic p in
+        the same way, at a prime ideal above p: the one at which a becomes the
+        first root of the modulus in the finite field. Any other field than
+        the document's own is refused.
 
     Returns
     -------
@@ -67,7 +70,7 @@ def read(path: str | Path, *, field: Field | str | None = None) -> Document:
     (20, 'Q')
     """
     name = "standard input" if str(path) == "-" else str(path)
-    wanted = _wanted_field(field)
+    wanted = None if field is None else wanted_field(field)
     text = read_text(path)
     if not text.strip():
         raise DocumentError([f"{name}: empty; give a JSON document or rows of numbers"])
@@ -83,32 +86,33 @@ def read(path: str | Path, *, field: Field | str | None = None) -> Document:
     return document
 
 
-def _wanted_field(field: Field | str | None) -> Field | None:
+def wanted_field(field: Field | str) -> Field:
+    """A field from an object, a name such as ``"F_7"``, or the JSON of a field with a modulus."""
     if not isinstance(field, str):
         return field
     return field_from_spec(parse_json(field, "field") if field.startswith("{") else field)
 
 
 def _in_field(document: Document, field: Field, faults: "_Faults") -> Document | None:
-    """The document itself, or what it becomes over another field than ℚ."""
+    """The document itself, or what it becomes over another field."""
+    source = document[0].field if isinstance(document, tuple) else document.field
+    if source == field:
+        return document
+    way = conversion(source, field)
+    assert way is not None  # `_field` has seen to that
     if isinstance(document, Configuration):
-        if document.field == field:
-            return document
-        planes = tuple(Plane.from_rows(field, _lattice(plane.rows)) for plane in document.planes)
+        planes = tuple(Plane.from_rows(field, way.rows(plane.rows)) for plane in document.planes)
         return replace(document, planes=planes)
     if isinstance(document, Subspace):
-        if document.field == field:
-            return document
-        return Subspace.span(field, document.n, _lattice(document.rows))
+        return Subspace.span(field, document.n, way.rows(document.rows))
     vectors = [
-        _entries(trivector.coordinates, f"trivectors[{i}]", field, faults)
+        [
+            faults.attempt(f"trivectors[{i}] entry {j}", partial(way.element, x))
+            for j, x in enumerate(trivector.coordinates)
+        ]
         for i, trivector in enumerate(document)
     ]
-    return None if faults.found else tuple(Trivector(field, vector) for vector in _all(vectors))
-
-
-def _lattice(rows: Rows) -> list[list[Any]]:
-    return QQ.integral_basis(rows)
+    return None if faults.found else tuple(Trivector(field, vector) for vector in vectors)
 
 
 class _Faults:
@@ -204,10 +208,14 @@ def _field(data: dict[str, Any], wanted: Field | None, faults: _Faults) -> Field
             faults.add("", 'no "field"; write for example "field": "Q", or give --field')
         return wanted
     stated: Field | None = faults.attempt("field", lambda: field_from_spec(data["field"]))
-    if stated is None or wanted is None or stated in (wanted, QQ):
+    if stated is None or wanted is None or stated == wanted:
         return stated
-    faults.add("field", f"the document is over {stated.name}; it cannot be read over {wanted.name}")
-    return None
+    before = len(faults.found)
+    way = faults.attempt("field", lambda: conversion(stated, wanted))
+    if way is None and len(faults.found) == before:
+        found = f"the document is over {stated.name}"
+        faults.add("field", f"{found}; it cannot be read over {wanted.name}")
+    return None if way is None else stated
 
 
 def _text(data: dict[str, Any], key: str, faults: _Faults) -> str:
