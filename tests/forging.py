@@ -9,6 +9,7 @@ import hashlib
 import json
 from collections import Counter
 from collections.abc import Sequence
+from itertools import combinations, permutations
 from typing import Any
 
 from trivector.certificates import checker
@@ -98,10 +99,24 @@ def plane(field: Field, rows: Sequence[Sequence[Any]]) -> Plane:
     return Plane.from_rows(field, [vector(field, row) for row in rows])
 
 
+def wedge(field: Field, rows: Sequence[Sequence[Any]]) -> list[Any]:
+    """The coordinates of u∧v∧w by the formula of Leibniz."""
+    found = []
+    for triple in combinations(range(len(rows[0])), 3):
+        total = field.zero
+        for a, b, c in permutations(range(3)):
+            term = rows[0][triple[a]] * rows[1][triple[b]] * rows[2][triple[c]]
+            even = (a, b, c) in ((0, 1, 2), (1, 2, 0), (2, 0, 1))
+            total = total + term if even else total - term
+        found.append(total)
+    return found
+
+
 class Truth:
     """The subject of a certificate as the engine sees it, examined at most once."""
 
     def __init__(self, document: Certificate) -> None:
+        self.document = document
         self.field, self.n = field_of(document), document["dimension"]
         ((kind, items),) = document["subject"].items()
         self.configuration: Configuration | None = None
@@ -209,6 +224,38 @@ class Truth:
             assert base is not None
             return claim["over_base"] is base
         return True
+
+    def holds_collineation(self, claim: dict[str, Any]) -> bool:
+        """By the images of rows of W, or of wedges of columns: no Plücker coordinates of images."""
+        field, n, power = self.field, self.n, self.field.characteristic ** claim.get("frobenius", 0)
+        g = [vector(field, row) for row in claim["matrix"]]
+        if len(g) != n or not field.matrix(g, n).det():
+            return False
+        target = Truth({**self.document, "subject": claim["target"]}) if "target" in claim else self
+
+        def twist(v: Sequence[Any]) -> list[Any]:
+            return [x**power for x in v] if power > 1 else list(v)
+
+        def image(v: Sequence[Any]) -> list[Any]:
+            moved = twist(v)
+            return [sum((a * x for a, x in zip(row, moved, strict=True)), field.zero) for row in g]
+
+        if self.configuration is None:
+            triples = list(combinations(range(n), 3))
+            columns = [[row[c] for row in g] for c in range(n)]
+            wedges = [wedge(field, [columns[c] for c in t]) for t in triples]
+            moved = []
+            for v in map(twist, self.vectors):
+                terms = [[x * c for c in w] for x, w in zip(v, wedges, strict=True)]
+                moved.append([sum(column, field.zero) for column in zip(*terms, strict=True)])
+            return Subspace.span(field, n, moved) == target.span
+        assert target.configuration is not None
+        order = claim["permutation"]
+        return sorted(order) == list(range(len(target.configuration.planes))) and all(
+            Plane.from_rows(field, [image(row) for row in p.rows])
+            == target.configuration.planes[order[i]]
+            for i, p in enumerate(self.configuration.planes)
+        )
 
 
 def is_true(document: Certificate) -> bool:

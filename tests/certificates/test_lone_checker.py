@@ -113,8 +113,8 @@ def test_exit_code_1_for_a_false_claim_and_2_for_no_certificate(tmp_path: Path) 
     assert "FAILS  span: dimension is 10" in answer.stdout.splitlines()
     file.write_text(json.dumps({**made, "title": "other"}), "utf-8")
     answer = alone(tmp_path, file)
-    assert (answer.returncode, answer.stderr) == (1, "")
-    assert answer.stdout == "FAILS  the SHA-256 does not agree with the contents\n"
+    assert (answer.returncode, answer.stdout) == (1, "")
+    assert "the SHA-256 does not agree with the contents" in answer.stderr
     for text in ("", "{}", "[1]", '{"kind": "planes"}', '{"kind":"certificate","format":1}'):
         file.write_text(text, "utf-8")
         answer = alone(tmp_path, file)
@@ -312,7 +312,7 @@ def test_the_plucker_relations_are_as_many_as_the_quadrics_through_g3v(
     size = comb(n, 3)
     field = checker.Field(p)
     identity = [[int(i == j) for j in range(size)] for i in range(size)]
-    relations = checker.quadrics(field, n, identity)
+    relations = field.quadrics(n, identity)
     place = {pair: i for i, pair in enumerate((a, b) for a in range(size) for b in range(a, size))}
     rows = []
     for relation in relations:

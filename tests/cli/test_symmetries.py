@@ -9,6 +9,7 @@ import examples
 from commands import Run
 
 import trivector
+from trivector.families.random_del_pezzo import random_del_pezzo
 from trivector.fields import QQ, field_from_spec, prime_field
 from trivector.subspaces import Plane
 
@@ -170,3 +171,66 @@ def test_what_makes_no_sense_is_one_line_and_exit_code_2(run: Run, tmp_path: Pat
         code, out, err = run(*argv)
         assert (code, out, len(err)) == (2, "", 1), argv
         assert word in err[0]
+
+
+def test_symmetries_are_certified_and_rechecked(tmp_path: Path, run: Run) -> None:
+    file = str(tmp_path / "symmetries.json")
+    for document, options in ((TWENTY, ()), (TWENTY, ("--field", "F_9", "--semilinear"))):
+        code, out, _ = run("symmetries", document, *options, "--json", "--certificate", file)
+        generators = json.loads(out)["generators"]
+        assert code == 0
+        code, out, _ = run("recheck", file, "--json")
+        answer = json.loads(out)
+        assert (code, answer["holds"]) == (0, True)
+        names = [claim["claim"] for claim in answer["claims"]]
+        assert names == ["span"] + ["collineation"] * len(generators)
+        assert "generate all collineations" in answer["uncertified"][0]
+
+
+def test_the_planes_over_an_extension_are_certified_for_a_subspace(
+    tmp_path: Path, run: Run
+) -> None:
+    # A curve with one pair of conjugate nodes: seventeen planes, two of them over F_25 only.
+    found = random_del_pezzo(prime_field(5), 17, Random(0))
+    assert [plane.degree for plane in found.closed] == [2]
+    basis = [[found.field.format(x) for x in row] for row in found.span.rows]
+    space, file = written(tmp_path / "space.json", "subspace", "F_5", basis), tmp_path / "c.json"
+    code, out, _ = run("symmetries", space, "--json", "--certificate", str(file))
+    data = json.loads(out)
+    assert (code, data["planes"]) == (0, 17)
+    code, out, _ = run("recheck", str(file), "--json")
+    answer = json.loads(out)
+    assert (code, answer["holds"]) == (0, True)
+    assert answer["field"]["characteristic"] == 5
+    assert len(answer["field"]["modulus"]) == 3
+    assert len(answer["claims"]) == 1 + len(data["generators"]) > 1
+    assert any("the space over F_5" in text for text in answer["uncertified"])
+
+
+def test_a_group_that_is_not_proved_to_be_all_is_not_called_all(tmp_path: Path, run: Run) -> None:
+    file = str(tmp_path / "certificate.json")
+    code, _, _ = run("symmetries", TWENTY, "--max-steps", "5", "--certificate", file)
+    assert code == 3
+    code, out, _ = run("recheck", file, "--json")
+    assert code == 0
+    (reason,) = json.loads(out)["uncertified"]
+    assert reason == "there may be more collineations: 5 partial images were tried"
+
+
+def test_an_equivalence_is_certified_and_a_difference_is_not(tmp_path: Path, run: Run) -> None:
+    file, field = str(tmp_path / "certificate.json"), prime_field(7)
+    twenty = trivector.read(TWENTY, field=field)
+    g = examples.random_invertible(field, 6, Random(3))
+    planes = [examples.image(field, g, p).to_entries() for p in twenty.planes]
+    image = written(tmp_path / "image.json", "planes", "F_7", planes)
+    code, _, _ = run("compare", TWENTY, image, "--field", "F_7", "--certificate", file)
+    assert code == 0
+    code, out, _ = run("recheck", file)
+    assert code == 0
+    assert "collineation  holds" in out
+    code, _, _ = run("compare", TWENTY, SEVENTEEN, "--certificate", file)
+    assert code == 1
+    code, out, _ = run("recheck", file, "--json")
+    answer = json.loads(out)
+    assert [claim["claim"] for claim in answer["claims"]] == ["span"]
+    assert answer["uncertified"] == ["not equivalent: number of planes: 20 and 17"]

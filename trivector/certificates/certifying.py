@@ -20,7 +20,17 @@ from trivector.sections.quadrics import restricted_quadrics
 from trivector.sections.study import expected_dimension
 from trivector.subspaces import Plane, Subspace
 
-__all__ = ["FORMAT", "certify_examination", "certify_section", "certify_trivectors"]
+__all__ = [
+    "FORMAT",
+    "Claim",
+    "assemble",
+    "certify_examination",
+    "certify_section",
+    "certify_trivectors",
+    "numbers",
+    "span_claim",
+    "subject",
+]
 
 FORMAT = 1
 """The version of the format of certificates; `checker.FORMAT` is the one it reads."""
@@ -68,7 +78,7 @@ def certify_examination(
         "pairs": examination.pairs.to_json(),
         "disjoint_pairs": [list(pair) for pair in examination.disjoint_pairs],
     }
-    claims, uncertified = [incidence, _span_claim(examination.span)], []
+    claims, uncertified = [incidence, span_claim(examination.span)], []
     section, why = _section_claim(examination.section, examination.planes, limits or Limits())
     if section:
         claims.append(section)
@@ -80,11 +90,10 @@ def certify_examination(
             claims.append(complete)
         else:
             uncertified.append("completeness: it was not decided, or rests on the section")
-    planes = [_numbers(field, plane.rows) for plane in examination.planes]
-    return _certificate(
+    return assemble(
         field,
         n,
-        {"planes": planes},
+        subject(examination.planes),
         claims,
         uncertified,
         title=examination.title,
@@ -113,17 +122,14 @@ def certify_section(
     2
     """
     space = report.subspace
-    claims, uncertified = [_span_claim(space)], []
+    claims, uncertified = [span_claim(space)], []
     section, why = _section_claim(report, (), limits or Limits())
     if section:
         claims.append(section)
     else:
         uncertified.append(f"the section: {why}")
-    # An empty list would be no subject: L = 0 is spanned by the zero vector.
-    rows = space.rows or ((space.field.zero,) * space.ambient_dimension,)
-    basis = _numbers(space.field, rows)
-    return _certificate(
-        space.field, space.n, {"basis": basis}, claims, uncertified, title=title, seed=seed
+    return assemble(
+        space.field, space.n, subject(space), claims, uncertified, title=title, seed=seed
     )
 
 
@@ -148,21 +154,22 @@ def certify_trivectors(trivectors: Sequence[Trivector]) -> dict[str, Any]:
         claim: Claim = {"claim": "decomposable", "index": index}
         if trivector.is_decomposable():
             plane = Plane.from_plucker(field, trivector.coordinates)
-            claims.append({**claim, "value": True, "plane": _numbers(field, plane.rows)})
+            claims.append({**claim, "value": True, "plane": numbers(field, plane.rows)})
         else:
             claims.append({**claim, "value": False})
-    vectors = _numbers(field, [trivector.coordinates for trivector in trivectors])
-    return _certificate(field, n, {"trivectors": vectors}, claims, [])
+    vectors = numbers(field, [trivector.coordinates for trivector in trivectors])
+    return assemble(field, n, {"trivectors": vectors}, claims, [])
 
 
-def _certificate(
+def assemble(
     field: Field,
     n: int,
-    subject: dict[str, Any],
+    about: dict[str, Any],
     claims: Sequence[Claim],
     uncertified: Sequence[str],
     **more: Any,
 ) -> dict[str, Any]:
+    """The document: what every certificate has, and the SHA-256 over all of it."""
     definition = field.definition()
     if "modulus" in definition:
         definition["irreducible"] = _field_evidence(field)
@@ -173,7 +180,7 @@ def _certificate(
         **{key: value for key, value in more.items() if value not in ("", None)},
         "field": definition,
         "dimension": n,
-        "subject": subject,
+        "subject": about,
         "claims": list(claims),
         "uncertified": list(uncertified),
     }
@@ -190,11 +197,22 @@ def _field_evidence(field: Field) -> dict[str, Any] | None:
     return irreducibility(QQ, [QQ.element(c) for c in field.definition()["modulus"]])
 
 
-def _numbers(field: Field, rows: Sequence[Sequence[Any]]) -> list[list[Any]]:
+def subject(data: Sequence[Plane] | Subspace) -> dict[str, Any]:
+    """What a certificate is about."""
+    if not isinstance(data, Subspace):
+        return {"planes": [numbers(plane.field, plane.rows) for plane in data]}
+    # An empty list would be no subject: L = 0 is spanned by the zero vector.
+    rows = data.rows or ((data.field.zero,) * data.ambient_dimension,)
+    return {"basis": numbers(data.field, rows)}
+
+
+def numbers(field: Field, rows: Sequence[Sequence[Any]]) -> list[list[Any]]:
+    """Entries as they stand in certificates."""
     return [[field.numbers(x) for x in row] for row in rows]
 
 
-def _span_claim(space: Subspace) -> Claim:
+def span_claim(space: Subspace) -> Claim:
+    """Dimension and isotropy; it needs no evidence."""
     claim: Claim = {"claim": "span", "dimension": space.dimension}
     if space.n == 6:
         claim |= {"isotropic": space.is_isotropic(), "lagrangian": space.is_lagrangian()}
@@ -264,7 +282,7 @@ def _infinite_claim(space: Subspace, limits: Limits) -> Claim | None:
         "claim": "infinite",
         "by": "functionals",
         "degree": algebra.top,
-        "functionals": _numbers(space.field, _functionals(algebra, bound + 1)),
+        "functionals": numbers(space.field, _functionals(algebra, bound + 1)),
     }
 
 
@@ -297,7 +315,7 @@ def _complete_claim(examination: Examination, section: Claim | None) -> Claim | 
         closure = all("plane" in point for point in points)
         return {**claim, "over_closure": closure, "over_base": base}
     if examination.missing:
-        further = _numbers(examination.field, examination.missing[0].rows)
+        further = numbers(examination.field, examination.missing[0].rows)
         return {**claim, "over_closure": False, "over_base": False, "further": further}
     if section:
         return {**claim, "over_closure": False, "over_base": None}

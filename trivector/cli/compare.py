@@ -4,7 +4,15 @@ import argparse
 import sys
 from typing import Any
 
-from trivector.cli.options import add_common, add_limits, limits_from, progress, write_answer
+from trivector.cli.options import (
+    add_certificate,
+    add_common,
+    add_limits,
+    limits_from,
+    progress,
+    write_answer,
+    write_certificate,
+)
 from trivector.cli.symmetries import add_steps
 from trivector.errors import UsageError
 
@@ -26,6 +34,7 @@ def add_parser(verbs: Any) -> None:
         "--semilinear", action="store_true", help="over F_q: admit v ↦ g·v^(p^j) as well"
     )
     add_common(parser)
+    add_certificate(parser)
     add_limits(parser)
     add_steps(parser)
     parser.set_defaults(run=run)
@@ -68,6 +77,22 @@ def run(arguments: argparse.Namespace) -> int:
             f"{arguments.first}, {arguments.second}: compare needs two documents of kind "
             '"planes", or two of kind "subspace"'
         )
+
+    def certificate() -> dict[str, Any]:
+        from trivector.certificates import certify_collineations
+
+        found = comparison.collineation
+        answer = "undecided" if comparison.equivalent is None else "not equivalent"
+        return certify_collineations(
+            first,
+            [] if found is None else [found],
+            target=second,
+            uncertified=[] if found else [f"{answer}: {comparison.difference or comparison.limit}"],
+            title=f"{arguments.first} and {arguments.second}",
+            seed=arguments.seed,
+        )
+
+    write_certificate(arguments, certificate)
 
     def report() -> Any:
         from trivector.reports import comparison_report

@@ -5,12 +5,14 @@ import sys
 from typing import Any
 
 from trivector.cli.options import (
+    add_certificate,
     add_common,
     add_limits,
     limits_from,
     positive,
     progress,
     write_answer,
+    write_certificate,
 )
 from trivector.errors import UsageError
 
@@ -35,6 +37,7 @@ def add_parser(verbs: Any) -> None:
         "--fixing", metavar="I,I,…", help="only those that keep each of these planes, such as 0,3"
     )
     add_common(parser)
+    add_certificate(parser)
     add_limits(parser)
     add_steps(parser)
     parser.set_defaults(run=run)
@@ -83,6 +86,27 @@ def run(arguments: argparse.Namespace) -> int:
         raise UsageError(
             f'{arguments.file}: symmetries needs a document of kind "planes" or "subspace"'
         )
+
+    def certificate() -> dict[str, Any]:
+        from trivector.certificates import certify_collineations
+
+        reason = "these and those that keep every plane generate all collineations"
+        if group.limit is not None:
+            reason = f"there may be more collineations: {group.limit}"
+        elif group.order is not None:
+            reason += f": {group.order}"
+        uncertified = [reason]
+        source = document if group.base_field is None else group.configuration
+        if group.base_field is not None:
+            uncertified.append(
+                f"the space over {group.base_field.name}: its planes stand here instead"
+            )
+        title = group.configuration.title or f"the planes in {arguments.file}"
+        return certify_collineations(
+            source, group.generators, uncertified=uncertified, title=title, seed=arguments.seed
+        )
+
+    write_certificate(arguments, certificate)
 
     def report() -> Any:
         from trivector.reports import symmetry_report
