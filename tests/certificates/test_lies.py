@@ -275,6 +275,32 @@ def test_a_finite_section_called_infinite_is_rejected(twenty: Certificate) -> No
     assert "proves nothing" in why_rejected(sealed(finite, claims=[lie]))
 
 
+def test_a_pencil_needs_two_planes_of_the_section_that_share_a_line(twenty: Certificate) -> None:
+    for family in examples.families()[:3]:
+        assert claim_of(sectioned(family.lagrangian(F7)), "infinite")["by"] == "pencil"
+    honest = sectioned(examples.families()[0].lagrangian(F7))
+    claim = claim_of(honest, "infinite")
+    first, second = claim["pencil"]
+    assert accepted(honest)
+    assert is_true(honest)
+    given = twenty["subject"]["planes"]
+    outside = [[*given[0][:2], row] for row in ([0, 0, 0, 0, 0, 1], [0, 0, 0, 1, 1, 0])]
+    lies = [
+        (honest, [first, first]),
+        (honest, [first]),
+        (honest, [first, second, second]),
+        (honest, [first, given[0]]),
+        (twenty, given[:2]),
+        (twenty, outside),
+        (twenty, [first, second]),
+        (twenty, [given[0], outside[0]]),
+    ]
+    for document, pencil in lies:
+        lie = sealed(document, claims=[{**claim, "pencil": pencil}])
+        assert not accepted(lie), pencil
+    assert not accepted(sealed(honest, claims=[{**claim, "by": "dimension"}]))
+
+
 def test_a_non_reduced_section_called_reduced_is_rejected() -> None:
     honest = sectioned(examples.cyclic_lagrangian(F11))
     assert accepted(honest)

@@ -16,6 +16,7 @@ from trivector.fields.protocol import Field
 from trivector.sections import Limits, SectionReport
 from trivector.sections.graded import QuadricAlgebra
 from trivector.sections.hilbert import grassmannian_h_vector
+from trivector.sections.lines_of_planes import find_pencil
 from trivector.sections.quadrics import restricted_quadrics
 from trivector.sections.study import expected_dimension
 from trivector.subspaces import Plane, Subspace
@@ -38,6 +39,7 @@ FORMAT = 1
 Claim = dict[str, Any]
 _MOST_PLACES = 12
 _HIGHEST_DEGREE = 6
+_MOST_OTHERS = 12  # planes, beside the given ones, among which a pencil is looked for
 
 
 def certify_examination(
@@ -226,7 +228,7 @@ def _section_claim(
 ) -> tuple[Claim | None, str]:
     """All planes, or infinitely many; or None and the reason."""
     if report.infinite:
-        claim = _infinite_claim(report.subspace, limits)
+        claim = _infinite_claim(report, limits)
         return claim, "" if claim else "no short proof that it is infinite within the limits"
     if report.points is None:
         return None, report.limit or "not all of its planes are known over their residue fields"
@@ -268,9 +270,14 @@ def _all_planes_claim(
     return None
 
 
-def _infinite_claim(space: Subspace, limits: Limits) -> Claim | None:
+def _infinite_claim(report: SectionReport, limits: Limits) -> Claim | None:
+    space = report.subspace
     if expected_dimension(space.n, space.dimension) >= 1:
         return {"claim": "infinite", "by": "dimension"}
+    pencil = find_pencil(space, report.known + report.others[:_MOST_OTHERS])
+    if pencil is not None:
+        rows = [numbers(space.field, plane.rows) for plane in pencil]
+        return {"claim": "infinite", "by": "pencil", "pencil": rows}
     quadrics = restricted_quadrics(space.rows, space.n, space.field.zero)
     algebra = QuadricAlgebra(space.field, space.dimension, quadrics)
     bounds = list(accumulate(grassmannian_h_vector(space.n)))

@@ -17,13 +17,13 @@ S = K[x_1 … x_m], R = S/I with the ideal I of the Plücker relations at Σ x_j
    (nothing, if δ = 0). Both ranks may be taken at a place, in the residue field of the local ring
    of ℚ at p, or of K = ℚ[a]/(g) at (p, a − r), r a simple root of g modulo p: these are discrete
    valuation rings, so there dim R_d can only grow, and onto there is onto over K.
-2. *Bounding H.* R_{d+1} is S_1⊗R_d modulo x_i⊗x_j·r − x_j⊗x_i·r, r ∈ R_{d−1}, and modulo the
-   quadrics for d = 1. Leaving relations out can only make the space larger.
-3. *Infinite.* Let c = codim G(3,V), h its h-vector. Z is infinite if m ≥ c + 2 (projective
-   dimension theorem), or if H(d) > h_0 + … + h_d for some d: were Z finite and m ≤ c + 1, then
-   dim G general equations of L would cut G in a finite scheme Z' ⊃ Z (over the closure); they are
-   a regular sequence, as the coordinate ring of G is Cohen–Macaulay (straightening law; memory),
-   so Z' has H(d) = h_0 + … + h_d. Functionals on S_d vanishing on I_d bound H(d) from below.
+2. *Bounding H.* R_{d+1} is S_1⊗R_d modulo x_i⊗x_j·r − x_j⊗x_i·r, r ∈ R_{d−1}, and the quadrics
+   for d = 1. With fewer relations the space is only larger.
+3. *Infinite.* Let c = codim G(3,V), h its h-vector. Z is infinite if two of its planes share a line
+   (their pencil), if m ≥ c + 2 (projective dimension theorem), or if H(d) > h_0 + … + h_d for some
+   d: were Z finite and m ≤ c + 1, dim G general equations of L would cut G in a finite Z' ⊃ Z (over
+   the closure), a regular sequence as the coordinate ring of G is Cohen–Macaulay (straightening
+   law; memory): H(d) = h_0 + … + h_d for Z'. Functionals vanishing on I_d bound H(d) from below.
 4. *Primes* below 3.3·10^24 by strong pseudoprime tests to 13 bases ("Strong pseudoprimes to twelve
    prime bases", 2017, Math. Comp. 86; memory).
 5. *Irreducible polynomials.* f over a finite field k, if on k[θ]/(f) u ↦ u^|k| is bijective and
@@ -368,8 +368,8 @@ class Check:
         for claim in listed(self.document["claims"], "claims", 1, 5000):
             name = claim["claim"]
             shape(name in NAMES.split(", "), f"an unknown claim; this checker knows {NAMES}")
-            power = 2 if name == "incidence" else 1
-            self.spend((10 + len(self.vectors) ** power) * 3000 * self.field.weight)
+            size = len(self.vectors) ** (2 if name == "incidence" else 1)
+            self.spend((10 + size) * 3000 * self.field.weight)
             try:
                 yield name, True, getattr(self, "check_" + name.replace(" ", "_"))(claim)
             except ClaimError as error:
@@ -424,8 +424,8 @@ class Check:
         for i, part in enumerate(parts):
             same = field.echelon(part, self.size) == field.echelon(images[order[i]], self.size)
             holds(same, f"plane {i} goes elsewhere" if planes else "the space goes elsewhere")
-        agree({}, claim, "matrix", "frobenius", "permutation", "target")
-        return f"planes 0, 1, … go to planes {order}" if planes else "the space goes to its target"
+        words = f"planes 0, 1, … go to planes {order}" if planes else "the space goes to its target"
+        return words + agree({}, claim, "matrix", "frobenius", "permutation", "target")
 
     def point(self, base: Any, data: Any, where: str) -> Point:
         f = [base.parse(c) for c in listed(data.get("modulus", []), where, 0, 463)]
@@ -509,28 +509,30 @@ class Check:
 
     def check_infinite(self, claim: Any) -> str:
         """Theorem 3."""
-        h, m, field = H_VECTOR[self.n], len(self.basis), self.field
-        by = "functionals" if "functionals" in claim else "dimension"
+        h, m, field, weight = H_VECTOR[self.n], len(self.basis), self.field, self.field.weight
+        by = next((by for by in ("functionals", "pencil") if by in claim), "dimension")
         if by == "dimension":
             holds(m >= self.size - 3 * (self.n - 3) + 1, f"dim L = {m} is too small for that")
+        elif by == "pencil":
+            one, two = (self.plane(x, "pencil") for x in listed(claim["pencil"], "pencil", 2, 2))
+            inside = self.contains(self.plucker(one)) and self.contains(self.plucker(two))
+            holds(inside and len(field.echelon(one + two, self.n)) == 4, "no pencil of the section")
         else:
             d = natural(claim["degree"], 8, "degree", 2)
             items = listed(claim["functionals"], "functionals", 1, 500)
-            self.spend((m**2 * 10**4 + comb(m + d - 1, d) * len(items) ** 2) * field.weight)
+            self.spend((m**2 * 10**4 + comb(m + d - 1, d) * len(items) ** 2) * weight)
             place = {x: i for i, x in enumerate(combinations_with_replacement(range(m), d))}
             functionals = [field.row(f, len(place), "functionals") for f in items]
             restricted = field.quadrics(self.n, list(self.basis.values()))
-            others = list(combinations_with_replacement(range(m), d - 2))
-            self.spend(sum(map(len, restricted)) * len(others) * len(items) * 3 * field.weight)
+            self.spend(sum(map(len, restricted)) * comb(m + d - 3, d - 2) * len(items) * 3 * weight)
+            others = combinations_with_replacement(range(m), d - 2)
             for quadric, rest in product(restricted, others):
                 at = [place[tuple(sorted((*pair, *rest)))] for pair in quadric]
                 values = [field.dot(quadric.values(), [f[i] for i in at]) for f in functionals]
                 holds(all(x == field.zero for x in values), "a functional does not vanish on I")
-            count = len(field.echelon(functionals, len(place)))
-            holds(count > sum(h[: d + 1]), f"H({d}) of at least {count} proves nothing")
-        agree({"by": by}, claim, "degree", "functionals")
-        self.infinite = True
-        return f"infinitely many planes over the closure, by {by}"
+            holds(len(field.echelon(functionals, len(place))) > sum(h[: d + 1]), "proves nothing")
+        words, self.infinite = agree({"by": by}, claim, "degree", "functionals", "pencil"), True
+        return f"infinitely many planes over the closure, {words}"
 
     def check_complete(self, claim: Any) -> str:
         holds(self.incident, "pairwise incidence has to be proved before")
@@ -575,8 +577,7 @@ def load(text: bytes | str) -> dict[str, Any]:
     data = json.loads(text, parse_float=str, parse_constant=str, object_pairs_hook=once)
     shape(isinstance(data, dict) and data.get("kind") == "certificate", "not a certificate")
     version = natural(data.get("format"), 10**6, "format")
-    age = "old" if version < FORMAT else "new"
-    shape(version == FORMAT, f"format {version} is too {age} for this checker of format {FORMAT}")
+    shape(version == FORMAT, f"format {version} is too {'old' if version < FORMAT else 'new'} here")
     return dict(data)
 
 

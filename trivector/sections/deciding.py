@@ -6,7 +6,7 @@ from itertools import accumulate, islice
 from random import Random
 from typing import Any
 
-from trivector.errors import BadReductionError
+from trivector.errors import BadReductionError, UndecidedError
 from trivector.fields.protocol import Reduction
 from trivector.sections.base_planes import find_base_planes
 from trivector.sections.closed_points import (
@@ -20,6 +20,7 @@ from trivector.sections.hilbert import (
     grassmannian_degree,
     grassmannian_h_vector,
 )
+from trivector.sections.lines_of_planes import find_pencil
 from trivector.sections.multiplicity import local_length
 from trivector.sections.quadrics import restricted_quadrics
 from trivector.sections.section_report import ClosedPoint, SectionReport
@@ -260,6 +261,11 @@ class Decision:
                 method=f"a linear space of dimension {space.dimension} meets G(3,{space.n}) in "
                 f"dimension ≥ {expected} (projective dimension theorem)",
             )
+        pencil = find_pencil(space, self.planes)
+        if pencil is not None:
+            return self._infinite_report(
+                limit=found.limit, method=f"a pencil of planes over {space.field.name} lies in it"
+            )
         degree = self._excessive_degree(found, reduction)
         if degree is not None:
             return self._infinite_report(
@@ -267,7 +273,11 @@ class Decision:
                 method=f"H({degree}) over {space.field.name} is larger than for any finite section",
             )
         for i, plane in enumerate(self.planes):
-            if local_length(space, plane) is None:
+            try:
+                length = local_length(space, plane, most=self.limits.columns(space.field))
+            except UndecidedError:
+                continue
+            if length is None:
                 return self._infinite_report(
                     limit=found.limit,
                     method=f"at known plane {i} the local length exceeds "

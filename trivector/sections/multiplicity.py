@@ -4,6 +4,7 @@ from collections.abc import Sequence
 from itertools import product
 from typing import Any
 
+from trivector.errors import UndecidedError
 from trivector.exterior.products import minors
 from trivector.fields.linear import kernel, rank, reduce_vector, row_space
 from trivector.fields.protocol import Field
@@ -35,13 +36,15 @@ def is_reduced_at(section: Subspace, plane: Plane) -> bool:
     return rank(field, values, 3 * (n - 3)) == 3 * (n - 3)
 
 
-def local_length(section: Subspace, plane: Plane) -> int | None:
+def local_length(section: Subspace, plane: Plane, *, most: int | None = None) -> int | None:
     """The multiplicity of a plane in the section G(3,V) ∩ P(L).
 
     Parameters
     ----------
     section : Subspace
         L, of which ``plane`` is a decomposable.
+    most : int, optional
+        The largest number of unknowns of a linear system.
 
     Returns
     -------
@@ -51,6 +54,11 @@ def local_length(section: Subspace, plane: Plane) -> int | None:
         for n = 7), which proves the section infinite: a finite section by L
         lies in a finite one by a general linear space of complementary
         dimension through L (over the closure), and that has this length.
+
+    Raises
+    ------
+    UndecidedError
+        If a system would need more than ``most`` unknowns.
 
     Notes
     -----
@@ -69,6 +77,8 @@ def local_length(section: Subspace, plane: Plane) -> int | None:
     while system.grow():
         if system.length > bound:
             return None
+        if most is not None and system.unknowns > most:
+            raise UndecidedError(f"a local length needs more than {most} unknowns; raise the limit")
     return system.length
 
 
@@ -155,6 +165,11 @@ class _InverseSystem:
     @property
     def length(self) -> int:
         return len(self.shifts)
+
+    @property
+    def unknowns(self) -> int:
+        """Of the linear system that the next `grow` solves."""
+        return self.variables * self.length
 
     def value(self, k: int, monomial: tuple[int, ...]) -> Any:
         """φ_k at a monomial."""
