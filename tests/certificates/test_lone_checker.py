@@ -275,7 +275,7 @@ def test_echelon_forms_and_kernels_agree_with_flint(p: int) -> None:
 
 def proved_irreducible(p: int, f: list[int]) -> bool:
     check = object.__new__(checker.Check)
-    check.field, check.work, check.digits = checker.Field(p), 0, 1
+    check.field, check.work = checker.Field(p), 0
     try:
         check.irreducible(f, {}, "f")
     except checker.ClaimError:
@@ -373,3 +373,24 @@ def test_hilbert_functions_have_their_published_values() -> None:
     for family in examples.families()[3:]:
         found = hilbert_bounds(family.lagrangian(prime_field(5)), 3)
         assert found == [family.hilbert(d) for d in (1, 2, 3)], family.name
+
+
+def test_what_growing_rational_numbers_cost_is_counted_and_bounded(
+    monkeypatch: pytest.MonkeyPatch,
+) -> None:
+    # Ten rows with unrelated denominators: entries of the echelon form have thousands of digits.
+    rng = Rng(5)
+    rows = [
+        [f"{rng.getrandbits(99)}/{rng.getrandbits(99) | 1}" for _ in range(20)] for _ in range(10)
+    ]
+    made = certify_section(
+        trivector.LinearSection(trivector.Subspace.from_terms(QQ, 6, [{(0, 1, 2): 1}])).examine()
+    )
+    claims = [{"claim": "span", "dimension": 10, "isotropic": False, "lagrangian": False}]
+    document = sealed(made, subject={"basis": rows}, claims=claims)
+    monkeypatch.setattr(checker, "MOST_WORK", 10**7)
+    with pytest.raises(ValueError, match="grow too long"):
+        checker.Check(checker.load(json.dumps(document)))
+    small = [[int(x.split("/")[0]) % 100 for x in row] for row in rows]
+    check = checker.Check(checker.load(json.dumps(sealed(document, subject={"basis": small}))))
+    assert all(verdict for _, verdict, _ in check.run())

@@ -27,9 +27,8 @@ from trivector.families.nodal_curves import (
     plane_curve,
 )
 from trivector.families.residues import Residue
-from trivector.families.ternary_forms import (
-    Form,
-)
+from trivector.families.small_frames import find_small_frame, in_frame
+from trivector.families.ternary_forms import Form
 from trivector.fields.protocol import Field
 from trivector.subspaces import Plane, Subspace
 
@@ -40,6 +39,8 @@ __all__ = [
     "del_pezzo_configuration",
     "ten_lines",
 ]
+
+_FRAME_STARTS = 12
 
 
 @dataclass(frozen=True)
@@ -87,8 +88,9 @@ class DelPezzoConfiguration:
     Notes
     -----
     For n ≥ 1 rational components the span is expected to be Lagrangian and the
-    planes to be all of it in characteristic ≠ 2 (in characteristic 2 the
-    sections computed all have length 22); nothing here claims that:
+    planes to be all of it in characteristic ≠ 2; in characteristic 2 the
+    section has length 22 if it is finite, see `trivector.families.pentagon`, so
+    the planes are not complete there. Nothing here claims either:
     `Subspace.is_lagrangian` and `Configuration.examine` decide it.
     """
 
@@ -107,6 +109,25 @@ class DelPezzoConfiguration:
     def length(self) -> int:
         """5 + the number of nodes over the closure."""
         return 5 + self.curve.number_of_nodes
+
+    def short_planes(self) -> tuple[Plane, ...]:
+        """The planes over the field; if it is infinite, in coordinates with short entries.
+
+        The coordinates are those of `find_small_frame` with seed 0; the planes
+        as they are if it finds none.
+        """
+        if self.field.order is not None:
+            return self.planes
+        try:
+            frame = find_small_frame(self.planes, Random(0), starts=_FRAME_STARTS)
+        except UsageError:
+            return self.planes
+        return in_frame(frame, self.planes)
+
+    def short_span(self) -> Subspace:
+        """The span, over an infinite field by short integral rows, not in echelon form."""
+        rows = self.field.integral_basis(self.span.rows)
+        return Subspace(self.field, 6, tuple(map(tuple, rows)))
 
 
 def ten_lines(field: Field) -> tuple[Component, ...]:

@@ -18,11 +18,14 @@ from trivector.fields.protocol import Field
 __all__ = ["components_from_text", "components_to_text", "form_from_text", "form_to_text"]
 
 _LARGEST_EXPONENT = 6
-_FACTOR = re.compile(r"([0-9]+(?:/[0-9]+)?)|([xyz])(?:(?:\^|\*\*)([0-9]))?")
+_TERM = re.compile(r"[-+]?(?:\([^()]*\)|[^-+()])+")
+_FACTOR = re.compile(r"([0-9]+(?:/[0-9]+)?|a(?:\^[0-9]{1,3})?|\([^()]+\))|([xyz])(?:\^([0-9]))?")
 
 
 def form_from_text(field: Field, text: str) -> dict[Exponents, Any]:
-    """A polynomial in x, y, z: a sum of products, without parentheses.
+    """A polynomial in x, y, z: a sum of products; parentheses for numbers only.
+
+    In a field with a modulus the letter a is a root of it: ``(a+1)*x*y - a*z^2``.
 
     Raises
     ------
@@ -36,7 +39,7 @@ def form_from_text(field: Field, text: str) -> dict[Exponents, Any]:
     {(1, 1, 0): 1, (0, 0, 2): -1/2}
     """
     compact = "".join(text.split()).replace("**", "^").replace("−", "-")
-    terms = re.findall(r"[-+]?[^-+]+", compact)
+    terms = _TERM.findall(compact)
     if not terms or "".join(terms) != compact:
         raise UsageError(f"{shorten(text)} is no polynomial in x, y, z; write it like x*y-2*z^2")
     form: dict[Exponents, Any] = {}
@@ -55,7 +58,7 @@ def form_from_text(field: Field, text: str) -> dict[Exponents, Any]:
             if letter:
                 powers["xyz".index(letter)] += int(power or 1)
             else:
-                value = value * field.element(number)
+                value = value * field.element(number.strip("()"))
             position = match.end()
             if body[position : position + 1] == "*" and position + 1 < len(body):
                 position += 1
@@ -74,6 +77,8 @@ def form_to_text(field: Field, form: Form) -> str:
         if exponents not in form:
             continue
         entry = str(field.format(form[exponents]))
+        if re.search("[-+]", entry[1:]):
+            entry = f"({entry})"
         negative = entry.startswith("-")
         size = entry[1:] if negative else entry
         powers = [
