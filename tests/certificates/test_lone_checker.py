@@ -21,6 +21,7 @@ import trivector
 from trivector import LinearSection, Subspace, prime_field
 from trivector.certificates import certify_examination, certify_section, checker
 from trivector.cli import main
+from trivector.fields import QQ
 from trivector.sections.hilbert import grassmannian_h_vector
 
 ROOT = Path(__file__).parents[2]

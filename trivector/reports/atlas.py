@@ -1,112 +1,41 @@
-"""The atlas: complete configurations as documents, and the index made from them.
-
-``python -m trivector.reports.atlas data/atlas`` writes both again.
-"""
+"""The index of the atlas: every cell computed from the documents."""
 
 import json
-import sys
 from collections import Counter
-from collections.abc import Sequence
 from itertools import combinations
 from pathlib import Path
-from random import Random
 from typing import Any
 
 from trivector.configurations import Configuration
-from trivector.configurations.ten_planes import random_ten_planes
 from trivector.documents import read
 from trivector.errors import UsageError
-from trivector.families.atlas import RECIPES, AtlasExample, atlas_example
-from trivector.families.symmetric import symmetric_planes
-from trivector.fields.names import field_from_spec
-from trivector.fields.prime import prime_field
 from trivector.sections import LinearSection, SectionReport
 from trivector.subspaces import Subspace
 
-__all__ = [
-    "SYMMETRIC_TEN",
-    "TEN_PLANES",
-    "atlas_index",
-    "document_of",
-    "index_row",
-    "symmetric_ten",
-    "ten_planes",
-    "write_atlas",
-]
+__all__ = ["CERTIFICATES", "atlas_index", "index_row"]
 
-TEN_PLANES = "length-10-over-f1009.json"
-"""The document of length 10, which no curve of the recipes gives."""
-
-SYMMETRIC_TEN = {"length-10-over-q.json": "Q", "length-10-over-f3.json": "F_3"}
-"""The documents of ten rational planes that a symmetry of order 5 keeps, and their fields."""
-
-_TEN_PLANES_PRIME, _TEN_PLANES_SEED = 1009, 1
+CERTIFICATES = "certificates"
+"""The folder of the certificates, each with the name of its document."""
 
 _HEAD = """\
 # Atlas
 
-Complete configurations, the longest first. *Length* is the degree of the section by the Lagrangian
-that the planes span, *over the field* how many of its planes are rational; both are computed anew
-whenever this index is made. *Points* counts the points that several planes share: `5×16` are 16
-points on five planes each. Every document says under `source` how it was made.
+Complete configurations, the longest first, and the six infinite families. *Length* is the degree of
+the section by the Lagrangian that the planes span (of an infinite one: dimension and degree), *over
+the field* how many of its planes are rational; all is computed anew whenever this index is made.
+*Points* counts the points that several planes share: `5×16` are 16 points on five planes each. The
+command makes the document again, to the byte; it stands under `source` in it too. The certificate
+can be checked with `trivector recheck`, or with the lone checker.
 
-This file and the documents are made by `python -m trivector.reports.atlas data/atlas`.
+Two sets of 22 planes in characteristic 2 are listed: they are not projectively equivalent, not by
+semilinear maps either, as the points show.
 
-| document | field | length | over the field | Hilbert function | pairs | points | made from |
+`python -m trivector.cli.atlas data/atlas` makes all of this folder; with `--check` before the
+folder it makes every document again, examines it and rechecks its certificate.
+
+| document | field | length | over the field | Hilbert function | pairs | points | `trivector make` |
 |---|---|---|---|---|---|---|---|
 """
-
-
-def document_of(example: AtlasExample) -> str:
-    """The JSON text of an entry, one plane (or one row of a basis) on a line."""
-    entries: dict[str, Any] = {
-        "kind": "planes" if example.planes else "subspace",
-        "title": example.title,
-        "source": example.source,
-        "field": example.field.to_spec(),
-        "dimension": 6,
-    }
-    if example.labels:
-        entries["labels"] = list(example.labels)
-    if example.planes:
-        name = "planes"
-        rows: list[Any] = [plane.to_entries() for plane in example.planes]
-    else:
-        name = "basis"
-        rows = [[example.field.format(x) for x in row] for row in example.lagrangian.rows]
-    head = [f"  {json.dumps(key)}: {json.dumps(value)}" for key, value in entries.items()]
-    lines = ",\n".join(f"    {json.dumps(row)}" for row in rows)
-    return "{\n" + ",\n".join(head) + f',\n  "{name}": [\n{lines}\n  ]\n}}\n'
-
-
-def ten_planes() -> AtlasExample:
-    """Ten planes in general position over F_1009; a few seconds."""
-    field = prime_field(_TEN_PLANES_PRIME)
-    planes = random_ten_planes(field, Random(_TEN_PLANES_SEED))
-    return AtlasExample(
-        field,
-        f"Complete configuration of length 10 over {field.name}",
-        "constructed here: ten pairwise incident planes in general position, one after the other; "
-        f"random_ten_planes({field.name}, Random({_TEN_PLANES_SEED}))",
-        (),
-        planes,
-        Subspace.span(field, 6, [plane.plucker for plane in planes]),
-    )
-
-
-def symmetric_ten(field_name: str) -> AtlasExample:
-    """Ten planes, two and their images under the cycle of e1, …, e5."""
-    field = field_from_spec(field_name)
-    planes = symmetric_planes(field, 10)
-    return AtlasExample(
-        field,
-        f"Complete configuration of length 10 over {field.name}",
-        "constructed here: the planes <e0+e4+e5, e1-e3, e2> and <e0+e5, e1, e4> and their images "
-        "under the cycle e1 -> e2 -> e3 -> e4 -> e5 -> e1",
-        (),
-        planes,
-        Subspace.span(field, 6, [plane.plucker for plane in planes]),
-    )
 
 
 def _points(configuration: Configuration) -> str:
@@ -141,21 +70,27 @@ def index_row(path: Path) -> tuple[tuple[Any, ...], str]:
     elif isinstance(document, Subspace):
         section = LinearSection(document).examine()
         pairs = points = "–"
+        if section.planes and section.points:
+            planes = Configuration(section.planes)
+            pairs, points = _pairs(planes), _points(planes)
         field = document.field
     else:
         raise UsageError(f"{path}: an entry of the atlas holds planes or a subspace")
     hilbert = ", ".join(map(str, section.hilbert_function or ()))
     rational = "–" if section.planes is None else str(len(section.planes))
-    made = data["source"].removeprefix("constructed here: ").split(" in |-2K|")[0]
+    made = data["source"].partition(" (version")[0].removeprefix("trivector make ")
+    length = str(section.degree)
+    if section.infinite:
+        length = f"dimension {section.projective_dimension}, degree {section.degree}"
     cells = [
-        f"[`{path.name}`]({path.name})",
+        f"[`{path.stem}`]({path.name}) ([certificate]({CERTIFICATES}/{path.name}))",
         field.name,
-        "infinite" if section.infinite else str(section.degree),
+        length,
         rational,
         f"{hilbert}, …",
         pairs,
         points,
-        made.replace("|", "\\|"),
+        f"`{made}`",
     ]
     degree = section.degree or 0
     key = (bool(section.infinite), -degree, field.characteristic, path.name)
@@ -166,32 +101,3 @@ def atlas_index(folder: Path) -> str:
     """The text of the index of all documents in a folder."""
     rows = sorted(index_row(path) for path in folder.glob("*.json"))
     return _HEAD + "".join(f"{row}\n" for _, row in rows)
-
-
-def write_atlas(folder: Path) -> list[Path]:
-    """Write every entry and the index; the paths, the index last."""
-    folder.mkdir(parents=True, exist_ok=True)
-    paths = []
-    made = {recipe.file_name: atlas_example(recipe) for recipe in RECIPES}
-    made |= {name: symmetric_ten(field_name) for name, field_name in SYMMETRIC_TEN.items()}
-    for name, example in [*made.items(), (TEN_PLANES, ten_planes())]:
-        path = folder / name
-        path.write_text(document_of(example), encoding="utf-8")
-        paths.append(path)
-    index = folder / "README.md"
-    index.write_text(atlas_index(folder), encoding="utf-8")
-    return [*paths, index]
-
-
-def main(arguments: Sequence[str]) -> int:
-    """Write the atlas into the folder named by the only argument."""
-    if len(arguments) != 1:
-        print("usage: python -m trivector.reports.atlas FOLDER", file=sys.stderr)
-        return 2
-    for path in write_atlas(Path(arguments[0])):
-        print(path)
-    return 0
-
-
-if __name__ == "__main__":
-    raise SystemExit(main(sys.argv[1:]))
