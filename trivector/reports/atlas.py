@@ -33,7 +33,7 @@ semilinear maps either, as the points show.
 `python -m trivector.cli.atlas data/atlas` makes all of this folder; with `--check` before the
 folder it makes every document again, examines it and rechecks its certificate.
 
-| document | field | length | over the field | Hilbert function | pairs | points | `trivector make` |
+| document | field | length | over the field | Hilbert function | pairs | points | `make` … |
 |---|---|---|---|---|---|---|---|
 """
 
