@@ -43,6 +43,13 @@ def add_parser(verbs: Any) -> None:
         help="planes on a circle (default), or the sorted incidence matrix",
     )
     parser.add_argument(
+        "--width",
+        type=_centimetres,
+        default=17.0,
+        metavar="CM",
+        help="of a picture on paper: 17 for a page (default), 8.6 for a column",
+    )
+    parser.add_argument(
         "--hyperplanes", action="store_true", help="hyperplanes in graphs and matrices as well"
     )
     parser.add_argument(
@@ -71,6 +78,15 @@ def run(arguments: argparse.Namespace) -> int:
     else:
         _write(arguments, incidence, wanted or "json")
     return 0
+
+
+def _centimetres(text: str) -> float:
+    try:
+        return float(text)
+    except ValueError:
+        raise argparse.ArgumentTypeError(
+            f"{text!r} is not a number of centimetres; write for example 8.6"
+        ) from None
 
 
 def _format_from_name(output: str | None) -> str | None:
@@ -140,7 +156,7 @@ def _draw(arguments: argparse.Namespace, incidence: Any, wanted: str) -> None:
     else:
         classes = pictures.PlaneClasses.from_refinement(configuration)
     draw = pictures.matrix_picture if arguments.picture == "matrix" else pictures.circle_picture
-    figure = draw(incidence, classes)
+    figure = draw(incidence, classes, width=arguments.width)
     try:
         pictures.save_picture(figure, arguments.output, wanted)
     except OSError as error:
