@@ -14,12 +14,14 @@ from hypothesis import strategies as st
 import trivector
 from trivector.configurations import (
     Configuration,
+    enumerate_complete_families,
     enumerate_maximal_families,
     exchange_graph,
     meeting_graph,
 )
-from trivector.errors import MixedFieldsError, UsageError
+from trivector.errors import MixedFieldsError, UndecidedError, UsageError
 from trivector.fields import QQ, prime_field
+from trivector.sections import Limits
 from trivector.subspaces import Plane
 
 
@@ -57,6 +59,36 @@ def test_maximal_families_are_the_cliques_of_networkx() -> None:
             tuple(sorted(int(v[1:]) for v in clique)) for clique in networkx.find_cliques(graph)
         }
         assert set(enumerate_maximal_families(planes)) == cliques
+
+
+@pytest.mark.parametrize(("q", "size", "seed"), [(2, 5, 0), (2, 5, 1), (2, 6, 2), (3, 8, 1)])
+def test_complete_families_are_the_cliques_that_no_plane_of_pg_5_q_can_join(
+    q: int, size: int, seed: int
+) -> None:
+    field = prime_field(q)
+    start, others = examples.random_clique(field, size, Random(seed))
+    # Some candidates are left out: families that only they complete must not be found.
+    candidates = [*start, *others][:: 2 if seed == 1 else 1]
+    assert len(candidates) > 10
+    graph = meeting_graph(Configuration(tuple(candidates)))
+    expected = set()
+    maximal = 0
+    for clique in networkx.find_cliques(graph):
+        family = tuple(sorted(int(v[1:]) for v in clique))
+        meeting = examples.planes_meeting_all(q, [candidates[i] for i in family])
+        maximal += 1
+        if len(meeting) == len(family):
+            expected.add(family)
+    found = enumerate_complete_families(candidates)
+    assert list(found) == sorted(expected)
+    assert (len(found) < maximal) is (seed == 1)
+    assert len(found) > 0 or seed == 1
+
+
+def test_an_undecided_family_is_not_left_out_in_silence() -> None:
+    planes = examples.over(QQ, examples.twenty_planes())
+    with pytest.raises(UndecidedError, match=r"planes 0, 1, .* over Q is not decided: degree 2"):
+        enumerate_complete_families(planes, limits=Limits(max_degree=2))
 
 
 def test_the_planes_through_a_point_of_pg_5_2_are_one_family_of_the_155() -> None:
