@@ -8,7 +8,7 @@ from trivector.configurations.configuration import Configuration
 from trivector.configurations.incidence import flat_text
 from trivector.errors import MixedFieldsError, UndecidedError, UsageError
 from trivector.exterior.products import gram_row
-from trivector.sections import Limits
+from trivector.sections import Limits, iter_rational_planes
 from trivector.subspaces import Plane
 
 if TYPE_CHECKING:
@@ -151,16 +151,31 @@ def enumerate_complete_families(
     found = []
     for family in enumerate_maximal_families(candidates, limit=limit):
         configuration = Configuration(tuple(candidates[i] for i in family))
-        answer = configuration.examine(limits=limits, seed=seed)
-        if answer.complete_over_base is None:
+        complete = _complete_by_sweep(configuration, limits or Limits())
+        if complete is None:
+            answer = configuration.examine(limits=limits, seed=seed)
+            complete = answer.complete_over_base
+        if complete is None:
             raise UndecidedError(
                 f"whether the planes {', '.join(map(str, family))} are complete over "
                 f"{configuration.field.name} is not decided: {answer.section.limit}; "
                 "raise that limit"
             )
-        if answer.complete_over_base:
+        if complete:
             found.append(family)
     return tuple(found)
+
+
+def _complete_by_sweep(configuration: Configuration, limits: Limits) -> bool | None:
+    """Over a small finite field: the sweep ends at the first plane that can be added."""
+    known = set(configuration.planes)
+    try:
+        sweep = iter_rational_planes(
+            configuration.span().orthogonal(), max_points=limits.max_points
+        )
+        return all(plane in known for plane in sweep)
+    except UsageError:  # an infinite field, or too many points
+        return None
 
 
 def _incidence_masks(planes: Sequence[Plane]) -> list[int]:
