@@ -150,7 +150,9 @@ def test_a_random_class_of_subsets_is_sorted_as_pairwise_comparison_sorts_it() -
 
 
 def test_what_has_no_frame_is_refused_with_advice() -> None:
-    with pytest.raises(UsageError, match="over Q they give no frame; compare"):
+    with pytest.raises(
+        UsageError, match=r"do not fix coordinates .* over Q they give no frame; compare"
+    ):
         canonical_form(Configuration(twenty(QQ)[:2]))
     with pytest.raises(UsageError, match="more elements than the limit allows"):
         canonical_form(Configuration(twenty(prime_field(7))[:2]), limit=5)
