@@ -90,10 +90,9 @@ def canonical_form(configuration: Configuration, *, limit: int = MAX_LEAVES) -> 
     Raises
     ------
     UsageError
-        If the shared points of the planes do not span what the planes span, or
-        do not fix the scale of each vector of a basis, and the field is
-        infinite: then infinitely many frames are alike and there is no least
-        image among finitely many. Or if more frames than the limit are needed.
+        If the shared points of the planes do not span what the planes span and
+        the field is infinite: a frame would need further points, which could
+        be infinitely many alike. Or if more frames than the limit are needed.
         `compare_configurations` and `equivalence_classes` work without frames.
 
     Notes
@@ -377,9 +376,8 @@ class _Labelling:
         k: Any = self._field
         if k.order is None:
             raise UsageError(
-                "the points that the planes share do not fix coordinates (they do not span what "
-                f"the planes span, or leave scales free), so over {k.name} they give no frame; "
-                "compare the configurations two by two"
+                "the points that the planes share do not span what the planes span, so over "
+                f"{k.name} they give no frame; compare the configurations two by two"
             )
         if k.order**2 > self._limit:
             raise UsageError(
