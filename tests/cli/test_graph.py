@@ -89,6 +89,35 @@ def test_pictures_are_written(run: Run, tmp_path: Path, picture: str, options: l
     assert path.read_text("utf-8").startswith("<?xml")
 
 
+def test_the_exchange_graph_of_the_moved_twenty(run: Run, tmp_path: Path) -> None:
+    code, out, err = run("graph", MOVED, "--kind", "exchange")
+    lines = [" ".join(line.split()) for line in out.splitlines()]
+    assert (code, err) == (0, [])
+    assert "families 1 of 3 planes, 1 of 19 planes" in lines
+    assert "in common 2 planes for 1 pair" in lines
+    code, out, _ = run("graph", MOVED, "--kind", "exchange", "--json", "--shared", "3")
+    data = json.loads(out)
+    assert data["families"] == [[0, 1, 2], list(range(1, 20))]
+    assert networkx.node_link_graph(data, edges="edges").number_of_edges() == 0
+    _, out, _ = run("graph", MOVED, "--kind", "exchange", "--format", "csv")
+    assert list(csv.reader(io.StringIO(out)))[1:] == [["0", "3", "2"], ["1", "2", "19"]]
+    path = tmp_path / "g.graphml"
+    assert run("graph", MOVED, "--kind", "exchange", "-o", str(path))[0] == 0
+    assert networkx.read_graphml(path).edges["0", "1"] == {"shared": 2}
+    _, out, _ = run("graph", MOVED, "--kind", "exchange", "--format", "dot")
+    assert "  0 -- 1 [shared=2];" in out.splitlines()
+
+
+def test_only_complete_families_when_asked(run: Run) -> None:
+    asked = ("--kind", "exchange", "--complete", "--field", "F_3", "--json")
+    _, out, _ = run("graph", MOVED, *asked)
+    assert json.loads(out)["families"] == []
+    _, out, _ = run("graph", TWENTY, *asked)
+    data = json.loads(out)
+    assert data["families"] == [list(range(20))]
+    assert data["scope"] == "complete over F_3"
+
+
 def test_what_makes_no_sense_is_one_line_and_exit_code_2(
     run: Run, tmp_path: Path, monkeypatch: pytest.MonkeyPatch
 ) -> None:
@@ -101,6 +130,10 @@ def test_what_makes_no_sense_is_one_line_and_exit_code_2(
         ([TWENTY, "-o", nowhere.replace("png", "dot")], "cannot be written"),
         ([TWENTY, "--kind", "meeting", "-o", str(tmp_path / "p.png")], "meeting"),
         ([TWENTY, "--format", "gif"], "gif"),
+        ([TWENTY, "--width", "wide", "-o", str(tmp_path / "p.png")], "centimetres"),
+        ([TWENTY, "--width", "1", "-o", str(tmp_path / "p.png")], "7 to 60 cm"),
+        ([MOVED, "--kind", "exchange", "-o", str(tmp_path / "p.png")], "exchange"),
+        ([MOVED, "--kind", "exchange", "--max-families", "1"], "more than 1 maximal"),
         ([str(space)], "planes"),
     ):
         code, out, err = run("graph", *argv)

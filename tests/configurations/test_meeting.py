@@ -14,12 +14,14 @@ from hypothesis import strategies as st
 import trivector
 from trivector.configurations import (
     Configuration,
+    enumerate_complete_families,
     enumerate_maximal_families,
     exchange_graph,
     meeting_graph,
 )
-from trivector.errors import MixedFieldsError, UsageError
+from trivector.errors import MixedFieldsError, UndecidedError, UsageError
 from trivector.fields import QQ, prime_field
+from trivector.sections import Limits
 from trivector.subspaces import Plane
 
 
@@ -57,6 +59,30 @@ def test_maximal_families_are_the_cliques_of_networkx() -> None:
             tuple(sorted(int(v[1:]) for v in clique)) for clique in networkx.find_cliques(graph)
         }
         assert set(enumerate_maximal_families(planes)) == cliques
+
+
+@pytest.mark.parametrize(("size", "seed"), [(6, 0), (6, 3), (7, 2), (7, 3)])
+def test_complete_families_are_the_cliques_that_no_plane_of_pg_5_2_can_join(
+    size: int, seed: int
+) -> None:
+    start, others = examples.random_clique(prime_field(2), size, Random(seed))
+    # Without one of the planes that meet the first ones: some families lack it.
+    candidates = [*start, *others[:-1]]
+    graph = meeting_graph(Configuration(tuple(candidates)))
+    cliques = [tuple(sorted(int(v[1:]) for v in c)) for c in networkx.find_cliques(graph)]
+    expected = sorted(
+        family
+        for family in cliques
+        if len(examples.planes_meeting_all(2, [candidates[i] for i in family])) == len(family)
+    )
+    assert 0 < len(expected) < len(cliques)
+    assert list(enumerate_complete_families(candidates)) == expected
+
+
+def test_an_undecided_family_is_not_left_out_in_silence() -> None:
+    planes = examples.over(QQ, examples.twenty_planes())
+    with pytest.raises(UndecidedError, match=r"planes 0, 1, .* over Q is not decided: degree 2"):
+        enumerate_complete_families(planes, limits=Limits(max_degree=2))
 
 
 def test_the_planes_through_a_point_of_pg_5_2_are_one_family_of_the_155() -> None:

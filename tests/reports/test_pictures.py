@@ -27,7 +27,9 @@ DATA = Path(__file__).parents[2] / "data"
 
 
 def configurations() -> dict[str, Configuration]:
-    found = {name: trivector.read(DATA / f"{name}.json") for name in NAMES[:-1]}
+    found = {name: trivector.read(DATA / f"{name}.json") for name in NAMES[:4]}
+    for length in LENGTHS:
+        found[f"length-{length}"] = trivector.read(DATA / "atlas" / f"length-{length}-over-q.json")
     field = field_from_spec("F_4")
     rows = [
         [[field.from_code(x) for x in row] for row in plane]
@@ -45,20 +47,38 @@ NAMES = [
     "twenty-planes",
     "twenty-two",
 ]
+LENGTHS = (10, 11, 12, 13, 15, 16, 19)
+ATLAS = [f"length-{length}" for length in LENGTHS]
+WIDTHS = (8.6, 17.0)  # a column and a page
 
 
 @pytest.fixture(scope="module")
-def drawn() -> dict[str, tuple[Configuration, Any, Any]]:
-    pictures = {}
-    for name, configuration in configurations().items():
-        incidence = Incidence(configuration)
-        classes = PlaneClasses.from_refinement(configuration)
-        pictures[name] = (
-            configuration,
-            circle_picture(incidence, classes),
-            matrix_picture(incidence, classes),
-        )
-    return pictures
+def drawn() -> Any:
+    """Name and width ↦ configuration, circle, matrix; drawn when first asked for."""
+    everything = configurations()
+    pictures: dict[tuple[str, float], tuple[Configuration, Any, Any]] = {}
+
+    def pick(name: str, width: float = 17.0) -> tuple[Configuration, Any, Any]:
+        if (name, width) not in pictures:
+            configuration = everything[name]
+            incidence = Incidence(configuration)
+            classes = PlaneClasses.from_refinement(configuration)
+            pictures[name, width] = (
+                configuration,
+                circle_picture(incidence, classes, width=width),
+                matrix_picture(incidence, classes, width=width),
+            )
+        return pictures[name, width]
+
+    return pick
+
+
+def writings(figure: Any) -> list[Any]:
+    return [
+        text
+        for text in figure.findobj(lambda artist: hasattr(artist, "get_unitless_position"))
+        if text.get_text() and text.get_visible()
+    ]
 
 
 def outlines(figure: Any) -> list[tuple[str, Any]]:
@@ -70,10 +90,8 @@ def outlines(figure: Any) -> list[tuple[str, Any]]:
     canvas.draw()
     renderer = canvas.get_renderer()
     found = []
-    for text in figure.findobj(lambda artist: hasattr(artist, "get_unitless_position")):
+    for text in writings(figure):
         words = text.get_text()
-        if not words or not text.get_visible():
-            continue
         angle = text.get_rotation()
         text.set_rotation(0)
         box = text.get_window_extent(renderer)
@@ -99,18 +117,55 @@ def overlap(first: Any, second: Any) -> bool:
     return True
 
 
-@pytest.mark.parametrize("name", NAMES)
-def test_no_label_touches_another_or_the_edge(name: str, drawn: Any) -> None:
-    _, circle, matrix = drawn[name]
+@pytest.mark.parametrize("name", NAMES + ATLAS)
+@pytest.mark.parametrize("width", WIDTHS)
+def test_no_label_touches_another_or_the_edge(name: str, width: float, drawn: Any) -> None:
+    _, circle, matrix = drawn(name, width)
     for figure in (circle, matrix):
         texts = outlines(figure)
         assert len(texts) >= 7
         assert [(a, b) for (a, x), (b, y) in combinations(texts, 2) if overlap(x, y)] == []
-        width, height = figure.get_size_inches() * figure.dpi
+        across, height = figure.get_size_inches() * figure.dpi
+        assert across <= width / 2.54 * figure.dpi + 1e-6
         for words, corners in texts:
             assert corners.min() >= 0, words
-            assert corners[:, 0].max() <= width, words
+            assert corners[:, 0].max() <= across, words
             assert corners[:, 1].max() <= height, words
+        assert min(text.get_fontsize() for text in writings(figure)) >= 6
+        for legend in figure.legends:
+            box = legend.get_window_extent()
+            assert min(box.x0, box.y0) >= 0
+            assert box.x1 <= across
+            # Every label of planes and points is above the legend.
+            others = [corners for words, corners in texts if "plane" not in words]
+            assert box.y1 <= min(corners[:, 1].min() for corners in others)
+
+
+@pytest.mark.parametrize("name", NAMES + ATLAS)
+@pytest.mark.parametrize("width", WIDTHS)
+def test_no_point_lies_on_another(name: str, width: float, drawn: Any) -> None:
+    _, circle, _ = drawn(name, width)
+    (axes,) = circle.axes
+    marks = [line for line in axes.lines if len(line.get_xdata()) == 1]
+    assert len(marks) >= 7
+    for a, b in combinations(marks, 2):
+        (x, y), (u, v) = (axes.transData.transform(m.get_xydata()[0]) for m in (a, b))
+        touching = (a.get_markersize() + b.get_markersize()) / 2 * circle.dpi / 72
+        assert (x - u) ** 2 + (y - v) ** 2 > touching**2
+
+
+def test_numbers_alone_are_upright_since_six_turned_is_nine(drawn: Any) -> None:
+    _, circle, _ = drawn("twenty-planes", 8.6)
+    assert {text.get_rotation() for text in writings(circle)} == {0.0}
+    _, circle, _ = drawn("twenty-planes", 17.0)
+    assert len({text.get_rotation() for text in writings(circle)}) > 10
+
+
+def test_groups_share_a_colour_only_if_all_do(drawn: Any) -> None:
+    for name, colours in (("length-11", 1), ("length-12", 8), ("length-16", 4)):
+        _, circle, _ = drawn(name)
+        (axes,) = circle.axes
+        assert len({line.get_color() for line in axes.lines if line.get_gid()}) == colours
 
 
 def test_the_check_of_overlaps_sees_one() -> None:
@@ -127,7 +182,7 @@ def test_the_check_of_overlaps_sees_one() -> None:
 
 @pytest.mark.parametrize("name", NAMES)
 def test_every_plane_and_every_shared_point_is_drawn(name: str, drawn: Any) -> None:
-    configuration, circle, matrix = drawn[name]
+    configuration, circle, matrix = drawn(name)
     count = len(configuration.planes)
     (axes,) = circle.axes
     planes = {line.get_gid() for line in axes.lines if line.get_gid()}
@@ -168,7 +223,7 @@ def test_classes_and_orbits_group_the_planes() -> None:
 def test_files_have_the_right_form_and_the_same_bytes(
     kind: str, drawn: Any, tmp_path: Path
 ) -> None:
-    configuration, circle, _ = drawn["twenty-planes"]
+    configuration, circle, _ = drawn("twenty-planes")
     again = circle_picture(Incidence(configuration), PlaneClasses.from_refinement(configuration))
     one, two = tmp_path / f"one.{kind}", tmp_path / f"two.{kind}"
     save_picture(circle, one, kind)
@@ -177,8 +232,8 @@ def test_files_have_the_right_form_and_the_same_bytes(
     assert content == two.read_bytes()
     if kind == "png":
         width, height = struct.unpack(">II", content[16:24])
-        assert width == 7 * 150
-        assert 7 * 150 < height < 9 * 150
+        assert width == int(17 / 2.54 * 200)
+        assert width < height < 1.3 * width
     elif kind == "svg":
         planes = re.findall(r'id="(plane-[0-9]+)"', content.decode("utf-8"))
         assert sorted(planes) == sorted(f"plane-{i}" for i in range(20))
@@ -194,5 +249,10 @@ def test_more_planes_than_can_be_read_are_refused(tmp_path: Path) -> None:
     configuration = Configuration(many.planes)
     with pytest.raises(UsageError, match="155 planes"):
         circle_picture(Incidence(configuration), PlaneClasses("class", (tuple(range(155)),)))
+    seven = Incidence(trivector.read(DATA / "seven-planes-p6.json"))
+    for draw in (circle_picture, matrix_picture):
+        for width in (3.0, 1000.0, float("nan")):
+            with pytest.raises(UsageError, match="from 7 to 60 cm"):
+                draw(seven, PlaneClasses("class", (tuple(range(7)),)), width=width)
     with pytest.raises(UsageError, match="not as gif"):
         save_picture(None, tmp_path / "x.gif", "gif")  # type: ignore[arg-type]

@@ -150,7 +150,7 @@ def test_a_random_class_of_subsets_is_sorted_as_pairwise_comparison_sorts_it() -
 
 
 def test_what_has_no_frame_is_refused_with_advice() -> None:
-    with pytest.raises(UsageError, match="over Q they give no frame; compare"):
+    with pytest.raises(UsageError, match=r"do not span .* over Q they give no frame; compare"):
         canonical_form(Configuration(twenty(QQ)[:2]))
     with pytest.raises(UsageError, match="more elements than the limit allows"):
         canonical_form(Configuration(twenty(prime_field(7))[:2]), limit=5)
@@ -168,3 +168,12 @@ def test_repeated_planes_belong_to_the_label() -> None:
         canonical_form(Configuration((*planes, planes[8]))).label,
     }
     assert len(labels) == 2
+
+
+def test_over_q_scales_that_planes_leave_free_are_no_obstacle() -> None:
+    # The diagonal matrices keep the seven planes of P^6, whose points span V.
+    planes = examples.over(QQ, examples.seven_planes())
+    g = examples.random_invertible(QQ, 7, Random(2))
+    changed = [examples.image(QQ, g, plane) for plane in reversed(planes)]
+    label = canonical_form(Configuration(tuple(changed))).label
+    assert label == canonical_form(Configuration(tuple(planes))).label

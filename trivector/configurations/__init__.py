@@ -5,6 +5,7 @@ from trivector.configurations.examination import Examination
 from trivector.configurations.growing import has_expected_dimension, random_incident_planes
 from trivector.configurations.incidence import Incidence, SharedFlat
 from trivector.configurations.meeting import (
+    enumerate_complete_families,
     enumerate_maximal_families,
     exchange_graph,
     meeting_graph,
@@ -15,6 +16,7 @@ __all__ = [
     "Examination",
     "Incidence",
     "SharedFlat",
+    "enumerate_complete_families",
     "enumerate_maximal_families",
     "exchange_graph",
     "has_expected_dimension",

@@ -1,19 +1,25 @@
 """Which planes meet, and the families that pairwise incidence makes."""
 
-from collections.abc import Iterator, Sequence
+from collections.abc import Hashable, Iterator, Sequence
 from itertools import combinations
 from typing import TYPE_CHECKING
 
 from trivector.configurations.configuration import Configuration
 from trivector.configurations.incidence import flat_text
-from trivector.errors import MixedFieldsError, UsageError
+from trivector.errors import MixedFieldsError, UndecidedError, UsageError
 from trivector.exterior.products import gram_row
+from trivector.sections import Limits, iter_rational_planes
 from trivector.subspaces import Plane
 
 if TYPE_CHECKING:
     import networkx
 
-__all__ = ["enumerate_maximal_families", "exchange_graph", "meeting_graph"]
+__all__ = [
+    "enumerate_complete_families",
+    "enumerate_maximal_families",
+    "exchange_graph",
+    "meeting_graph",
+]
 
 
 def meeting_graph(configuration: Configuration) -> "networkx.Graph[str]":
@@ -100,6 +106,78 @@ def enumerate_maximal_families(
     return tuple(sorted(found))
 
 
+def enumerate_complete_families(
+    candidates: Sequence[Plane],
+    *,
+    limit: int = 100_000,
+    limits: Limits | None = None,
+    seed: int = 0,
+) -> tuple[tuple[int, ...], ...]:
+    """All complete configurations, over the field of the planes, among the candidates.
+
+    A complete configuration is a maximal family of pairwise incident planes,
+    so these are the families of `enumerate_maximal_families` that no plane over
+    the field, candidate or not, can be added to.
+
+    Parameters
+    ----------
+    candidates, limit
+        As in `enumerate_maximal_families`.
+    limits : Limits, optional
+        For the planes that meet a whole family.
+    seed : int
+
+    Returns
+    -------
+    tuple of tuples of int
+        Increasing indices into the candidates; sorted. Exhaustive.
+
+    Raises
+    ------
+    UsageError
+        As `enumerate_maximal_families`.
+    UndecidedError
+        If it is not decided within the limits whether a family is complete.
+
+    Examples
+    --------
+    >>> from trivector import read
+    >>> planes = read("data/twenty-planes.json", field="F_3").planes
+    >>> [len(family) for family in enumerate_complete_families(planes)]
+    [20]
+    >>> enumerate_complete_families(planes[1:])
+    ()
+    """
+    found = []
+    for family in enumerate_maximal_families(candidates, limit=limit):
+        configuration = Configuration(tuple(candidates[i] for i in family))
+        complete = _complete_by_sweep(configuration, limits or Limits())
+        if complete is None:
+            answer = configuration.examine(limits=limits, seed=seed)
+            complete = answer.complete_over_base
+        if complete is None:
+            raise UndecidedError(
+                f"whether the planes {', '.join(map(str, family))} are complete over "
+                f"{configuration.field.name} is not decided: {answer.section.limit}; "
+                "raise that limit"
+            )
+        if complete:
+            found.append(family)
+    return tuple(found)
+
+
+def _complete_by_sweep(configuration: Configuration, limits: Limits) -> bool | None:
+    """Over a small finite field: the sweep ends at the first plane that can be added."""
+    known = set(configuration.planes)
+    try:
+        sweep = iter_rational_planes(
+            configuration.span().orthogonal(), max_points=limits.max_points
+        )
+        return all(plane in known for plane in sweep)
+    except UsageError:  # an infinite field, or too many points
+        return None
+
+
 def _incidence_masks(planes: Sequence[Plane]) -> list[int]:
     """For each plane the bits of the other planes that meet it."""
     if len(set(planes)) < len(planes):
@@ -153,13 +231,13 @@ def _bits(mask: int) -> Iterator[int]:
         mask ^= low
 
 
-def exchange_graph(families: Sequence[Sequence[Plane]], *, shared: int) -> "networkx.Graph[int]":
+def exchange_graph(families: Sequence[Sequence[Hashable]], *, shared: int) -> "networkx.Graph[int]":
     """Complete configurations, joined when they have enough planes in common.
 
     Parameters
     ----------
-    families : sequence of sequences of Plane
-        For example the families of `enumerate_maximal_families`.
+    families : sequence of sequences of Plane, or of indices of planes
+        For example the families of `enumerate_complete_families`.
     shared : int
         The least number of common planes for an edge, at least 1.
 
@@ -168,6 +246,12 @@ def exchange_graph(families: Sequence[Sequence[Plane]], *, shared: int) -> "netw
     networkx.Graph
         Nodes 0, 1, … (attribute ``planes``: how many), edges with ``shared``:
         how many planes the two have in common.
+
+    Examples
+    --------
+    >>> graph = exchange_graph([(0, 1, 2, 3), (1, 2, 3, 4), (4, 5)], shared=2)
+    >>> list(graph.edges(data="shared"))
+    [(0, 1, 3)]
     """
     import networkx
 

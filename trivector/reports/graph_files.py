@@ -2,6 +2,7 @@
 
 import csv
 import io
+from collections.abc import Sequence
 from typing import TYPE_CHECKING, Any
 
 from trivector.configurations import Configuration, Incidence
@@ -9,17 +10,24 @@ from trivector.configurations import Configuration, Incidence
 if TYPE_CHECKING:
     import networkx
 
-__all__ = ["dot", "graphml", "incidence_matrix_csv", "meeting_matrix_csv", "node_link"]
+__all__ = [
+    "dot",
+    "exchange_matrix_csv",
+    "graphml",
+    "incidence_matrix_csv",
+    "meeting_matrix_csv",
+    "node_link",
+]
 
 
-def graphml(graph: "networkx.Graph[str]") -> str:
+def graphml(graph: "networkx.Graph[Any]") -> str:
     """GraphML with all attributes of nodes and edges; same graph, same bytes."""
     import networkx
 
     return "\n".join(networkx.generate_graphml(graph)) + "\n"
 
 
-def node_link(graph: "networkx.Graph[str]") -> dict[str, Any]:
+def node_link(graph: "networkx.Graph[Any]") -> dict[str, Any]:
     """Node-link data: ``{"nodes": [{"id": …}], "edges": [{"source": …, "target": …}], …}``."""
     import networkx
 
@@ -27,7 +35,7 @@ def node_link(graph: "networkx.Graph[str]") -> dict[str, Any]:
     return data
 
 
-def dot(graph: "networkx.Graph[str]") -> str:
+def dot(graph: "networkx.Graph[Any]") -> str:
     """DOT, with a shape for each kind of node and all attributes kept.
 
     >>> from trivector import read
@@ -84,6 +92,13 @@ def meeting_matrix_csv(configuration: Configuration) -> str:
         values[i][j] = values[j][i] = meet + 1
     header = ["plane", *(f"p{i}" for i in range(count))]
     return _csv([header, *([f"p{i}", *row] for i, row in enumerate(values))])
+
+
+def exchange_matrix_csv(families: Sequence[Sequence[int]]) -> str:
+    """How many planes two families have in common, as CSV; on the diagonal how many they have."""
+    sets = [set(family) for family in families]
+    header = ["family", *(str(i) for i in range(len(sets)))]
+    return _csv([header, *([i, *(len(a & b) for b in sets)] for i, a in enumerate(sets))])
 
 
 def _csv(rows: list[list[Any]]) -> str:

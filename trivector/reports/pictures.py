@@ -19,7 +19,7 @@ from trivector.symmetry.refinement import IncidenceColours
 if TYPE_CHECKING:
     from matplotlib.figure import Figure
 
-__all__ = ["FORMATS", "PlaneClasses", "circle_picture", "matrix_picture", "save_picture"]
+__all__ = ["FORMATS", "WIDTH", "PlaneClasses", "circle_picture", "matrix_picture", "save_picture"]
 
 FORMATS = ("png", "svg", "pdf")
 
@@ -27,9 +27,43 @@ _COLOURS = ("#0072B2", "#E69F00", "#009E73", "#CC79A7", "#D55E00", "#56B4E9", "#
 _MARKERS = ("o", "s", "^", "D", "p", "h", "v", "8")
 _INK, _FAINT = "#222222", "#9A9A9A"
 
-_WIDTH = 7.0  # inches: the text width of A4 or letter paper with ordinary margins
+WIDTH = 17.0  # centimetres: the text width of A4 paper; a column of two has 8.6
+_NARROWEST, _WIDEST = 7.0, 60.0
 _LONGEST_LABEL = 22
 _MOST_PLANES = 80
+_FEW_HUBS = 20  # whose places are improved; the time grows with the third power
+
+
+@dataclass(frozen=True)
+class _Sizes:
+    """What is printed how large; lengths in inches, type and marks in points.
+
+    Nothing is set in less than 6 points: a narrow picture is drawn anew, with
+    the numbers of the planes only, not made smaller.
+    """
+
+    width: float
+    narrow: bool
+    dpi: int
+    label: int
+    small: int
+    legend: float
+    plane: float
+    hub: float
+    line: float
+    row: float
+
+    @classmethod
+    def of(cls, centimetres: float, count: int) -> "_Sizes":
+        if not _NARROWEST <= centimetres <= _WIDEST:
+            raise UsageError(
+                f"a picture is from {_NARROWEST:g} to {_WIDEST:g} cm wide, "
+                f"not {centimetres:g} cm; 8.6 is a column, 17 a page"
+            )
+        width, many = centimetres / 2.54, count > 30
+        if centimetres < 12:
+            return cls(width, True, 300, 6 if many else 7, 6, 6.5, 6, 10.5, 0.6, 0.13)
+        return cls(width, False, 200, 6 if many else 9, 7, 8, 9, 13, 1.0, 0.12 if many else 0.2)
 
 
 @dataclass(frozen=True)
@@ -64,42 +98,58 @@ class PlaneClasses:
         return cls("orbit", orbits(permutations, count))
 
 
-def circle_picture(incidence: Incidence, classes: PlaneClasses) -> "Figure":
+def circle_picture(
+    incidence: Incidence, classes: PlaneClasses, *, width: float = WIDTH
+) -> "Figure":
     """The planes on a circle, grouped; inside it the points and lines that they share.
 
     A point on exactly two planes is the chord between them; every other
     point or line is a node joined to its planes, with its number (of a line: L).
+    Up to eight groups have colours of their own; more are shown by gaps only.
+
+    Parameters
+    ----------
+    incidence : Incidence
+    classes : PlaneClasses
+    width : float
+        In centimetres, as it is to be printed: type has at least 6 points
+        then. Below 12 cm planes carry their numbers without labels.
 
     Returns
     -------
     matplotlib.figure.Figure
-        7 inches wide, for `save_picture`.
+        For `save_picture`.
 
     Raises
     ------
     UsageError
-        If there are more than 80 planes, or matplotlib is missing.
+        If there are more than 80 planes, the width is not from 7 to 60 cm, or
+        matplotlib is missing.
     """
     configuration = incidence.configuration
     _check_size(configuration)
     pairs = [p for p in incidence.points if len(p.planes) == 2]
     hubs = [p for p in incidence.points if len(p.planes) > 2] + list(incidence.lines)
     styles = _hub_styles(hubs)
-    figure = _new_figure(_WIDTH, _WIDTH)  # fails early where matplotlib is missing
-    handles = _legend_handles(incidence, classes, styles)
-    legend = 0.15 + 0.18 * math.ceil(len(handles) / 3)
-    height = _WIDTH + legend
-    figure.set_size_inches(_WIDTH, height)
-    figure.legend(handles=handles, loc="lower center", ncols=min(3, len(handles)), fontsize=8,
-                  frameon=False, bbox_to_anchor=(0.5, 0.0))  # fmt: skip
-    axes = figure.add_axes((0.0, legend / height, 1.0, _WIDTH / height))
+    sizes = _Sizes.of(width, len(configuration.planes))
+    side = sizes.width
+    figure = _new_figure(side, side, sizes.dpi)  # fails early where matplotlib is missing
+    handles = _legend_handles(incidence, classes, styles, sizes)
+    columns = 2 if sizes.narrow else 3
+    legend = (0.15 + 0.18 * math.ceil(len(handles) / columns)) * sizes.legend / 8
+    height = side + legend
+    figure.set_size_inches(side, height)
+    figure.legend(handles=handles, loc="lower center", ncols=min(columns, len(handles)),
+                  fontsize=sizes.legend, frameon=False, bbox_to_anchor=(0.5, 0.0))  # fmt: skip
+    axes = figure.add_axes((0.0, legend / height, 1.0, side / height))
     axes.set_axis_off()
     axes.set_aspect("equal")
-    labels = _labels(configuration)
-    size = 9 if len(labels) <= 30 else 6
-    longest = max(_text_width(label, size) for label in labels)
-    # Labels begin at 1.07 and end before the edge, 3.5 inches from the centre.
-    reach = 1.07 / (0.97 - longest / (_WIDTH / 2))
+    labels = _labels(configuration, sizes)
+    longest = max(_text_width(label, sizes.label) for label in labels)
+    # A number that is turned may be read as another: 6 as 9.
+    upright = max(len(label) for label in labels) <= 2
+    # Labels begin at 1.07 and end before the edge, half the width from the centre.
+    reach = 1.07 / (0.97 - longest / (side / 2))
     axes.set_xlim(-reach, reach)
     axes.set_ylim(-reach, reach)
 
@@ -107,7 +157,7 @@ def circle_picture(incidence: Incidence, classes: PlaneClasses) -> "Figure":
     places = {i: (math.sin(a), math.cos(a)) for i, a in angles.items()}
     for point in pairs:
         (x0, y0), (x1, y1) = (places[i] for i in point.planes)
-        axes.plot([x0, x1], [y0, y1], color=_FAINT, linewidth=0.7, zorder=1)
+        axes.plot([x0, x1], [y0, y1], color=_FAINT, linewidth=0.7 * sizes.line, zorder=1)
     numbers = {
         id(flat): f"{letter}{j}"
         for letter, kind in (("", incidence.points), ("L", incidence.lines))
@@ -117,19 +167,27 @@ def circle_picture(incidence: Incidence, classes: PlaneClasses) -> "Figure":
         marker, colour, _ = styles[_hub_key(hub)]
         for i in hub.planes:
             px, py = places[i]
-            axes.plot([x, px], [y, py], color=colour, linewidth=0.9, alpha=0.75, zorder=2)
-        axes.plot([x], [y], marker=marker, markersize=13, color="white", markeredgecolor=colour,
-                  markeredgewidth=1.6, zorder=4)  # fmt: skip
-        axes.text(x, y, numbers[id(hub)], ha="center", va="center_baseline", fontsize=7,
+            axes.plot([x, px], [y, py], color=colour, linewidth=0.9 * sizes.line, alpha=0.75,
+                      zorder=2)  # fmt: skip
+        axes.plot([x], [y], marker=marker, markersize=sizes.hub, color="white",
+                  markeredgecolor=colour, markeredgewidth=1.6 * sizes.line, zorder=4)  # fmt: skip
+        axes.text(x, y, numbers[id(hub)], ha="center", va="center_baseline", fontsize=sizes.small,
                   color=_INK, zorder=5)  # fmt: skip
     for position, group in enumerate(classes.groups):
-        colour = _COLOURS[position % len(_COLOURS)]
+        colour = _group_colour(position, classes)
         for i in group:
             x, y = places[i]
-            axes.plot([x], [y], marker="o", markersize=9, color=colour, markeredgecolor=_INK,
-                      markeredgewidth=0.8, zorder=6, gid=f"plane-{i}")  # fmt: skip
-            _radial_label(axes, angles[i], labels[i], size)
+            axes.plot([x], [y], marker="o", markersize=sizes.plane, color=colour,
+                      markeredgecolor=_INK, markeredgewidth=0.8 * sizes.line, zorder=6,
+                      gid=f"plane-{i}")  # fmt: skip
+            write = _upright_label if upright else _radial_label
+            write(axes, angles[i], labels[i], sizes.label)
     return figure
+
+
+def _group_colour(position: int, classes: PlaneClasses) -> str:
+    """No two groups share a colour, unless all do."""
+    return _COLOURS[position if len(classes.groups) <= len(_COLOURS) else 0]
 
 
 def _check_size(configuration: Configuration) -> None:
@@ -141,21 +199,21 @@ def _check_size(configuration: Configuration) -> None:
         )
 
 
-def _new_figure(width: float, height: float) -> "Figure":
+def _new_figure(width: float, height: float, dpi: int) -> "Figure":
     try:
         from matplotlib.figure import Figure
     except ImportError:
         raise UsageError(
             "pictures need the library matplotlib: pip install 'trivector[pictures]'"
         ) from None
-    return Figure(figsize=(width, height), dpi=150, facecolor="white")
+    return Figure(figsize=(width, height), dpi=dpi, facecolor="white")
 
 
-def _labels(configuration: Configuration) -> list[str]:
-    """The number of each plane, and its label if there is one."""
+def _labels(configuration: Configuration, sizes: _Sizes) -> list[str]:
+    """The number of each plane, and its label if there is one and room for it."""
     result = []
     for i in range(len(configuration.planes)):
-        label = configuration.labels[i] if configuration.labels else ""
+        label = configuration.labels[i] if configuration.labels and not sizes.narrow else ""
         label = "".join(c if c.isprintable() else " " for c in label).replace("$", r"\$")
         text = str(i) if not label or label == str(i) else f"{i}  {label}"
         result.append(text if len(text) <= _LONGEST_LABEL else text[: _LONGEST_LABEL - 1] + "…")
@@ -217,7 +275,27 @@ def _hub_places(hubs: Sequence[SharedFlat], angles: dict[int, float]) -> list[tu
             if best is None or room > best[0] + 1e-6:
                 best = room, places
     assert best is not None
-    return best[1]
+    return _moved_apart(hubs, best[1], angles) if len(hubs) <= _FEW_HUBS else best[1]
+
+
+def _moved_apart(
+    hubs: Sequence[SharedFlat], places: list[tuple[float, float]], angles: dict[int, float]
+) -> list[tuple[float, float]]:
+    """Small steps of one hub at a time, as long as they make more room."""
+    room = _room(hubs, places, angles)
+    for step in (0.12, 0.08, 0.05):
+        for j in range(len(hubs)):
+            x, y = places[j]
+            for eighth in range(8):
+                turn = math.pi * eighth / 4
+                place = (x + step * math.sin(turn), y + step * math.cos(turn))
+                if math.hypot(*place) > 0.78:
+                    continue
+                trial = [*places[:j], place, *places[j + 1 :]]
+                found = _room(hubs, trial, angles)
+                if found > room + 1e-6:
+                    room, places = found, trial
+    return places
 
 
 def _room(
@@ -235,7 +313,7 @@ def _room(
                 t = ((x - u) * du + (y - v) * dv) / (du * du + dv * dv)
                 t = min(max(t, 0.0), 1.0)
                 nearest = min(nearest, math.hypot(x - u - t * du, y - v - t * dv))
-        distances.append(min(nearest, 0.06))
+        distances.append(min(nearest, 0.08))
     return min(distances) + sum(distances) / len(distances)
 
 
@@ -265,20 +343,27 @@ def _radial_label(axes: Any, angle: float, text: str, size: int) -> None:
               fontsize=size, color=_INK)  # fmt: skip
 
 
+def _upright_label(axes: Any, angle: float, text: str, size: int) -> None:
+    axes.annotate(text, (math.sin(angle), math.cos(angle)), fontsize=size, color=_INK,
+                  xytext=(1.45 * size * math.sin(angle), 1.45 * size * math.cos(angle)),
+                  textcoords="offset points", ha="center", va="center")  # fmt: skip
+
+
 def _legend_handles(
     incidence: Incidence,
     classes: PlaneClasses,
     styles: dict[tuple[int, int], tuple[str, str, str]],
+    sizes: _Sizes,
 ) -> list[Any]:
     from matplotlib.lines import Line2D
 
     entries: list[tuple[str, Any, str, str]] = []  # marker, line, colour, words
-    if len(classes.groups) <= 6:
+    if len(classes.groups) <= len(_COLOURS):
         for position, group in enumerate(classes.groups):
             words = f"{_count(len(group), 'plane')} ({classes.name} {position + 1})"
             entries.append(("o", "", _COLOURS[position], words))
     else:
-        words = f"planes, in {len(classes.groups)} {_plural(classes.name)} round the circle"
+        words = f"planes, in {len(classes.groups)} {_plural(classes.name)}"
         entries.append(("o", "", _COLOURS[0], words))
     entries += [(marker, "-", colour, words) for marker, colour, words in styles.values()]
     pairs = incidence.profile("points").get(2)
@@ -292,7 +377,8 @@ def _legend_handles(
             linestyle=line,
             color=colour,
             label=words,
-            markersize=8,
+            markersize=sizes.legend,
+            linewidth=1.5 * sizes.line,
             markerfacecolor="white" if line else colour,
             markeredgecolor=colour if line else _INK,
         )
@@ -308,12 +394,21 @@ def _plural(noun: str) -> str:
     return noun + ("es" if noun.endswith("s") else "s")
 
 
-def matrix_picture(incidence: Incidence, classes: PlaneClasses) -> "Figure":
+def matrix_picture(
+    incidence: Incidence, classes: PlaneClasses, *, width: float = WIDTH
+) -> "Figure":
     """The incidence matrix: planes by groups, points by the number of planes on them.
 
     Within a block the points are sorted by their planes, so that structure
     shows as pattern. Numbers above the blocks say how many planes are on each
     of their points; lines that planes share follow after the points.
+
+    Parameters
+    ----------
+    incidence : Incidence
+    classes : PlaneClasses
+    width : float
+        The largest width in centimetres, as in `circle_picture`.
 
     Returns
     -------
@@ -322,7 +417,7 @@ def matrix_picture(incidence: Incidence, classes: PlaneClasses) -> "Figure":
     Raises
     ------
     UsageError
-        If there are more than 80 planes, or matplotlib is missing.
+        As `circle_picture`.
     """
     configuration = incidence.configuration
     _check_size(configuration)
@@ -332,51 +427,53 @@ def matrix_picture(incidence: Incidence, classes: PlaneClasses) -> "Figure":
     flats.sort(key=lambda flat: (flat.flat.projective_dimension, -len(flat.planes),
                                  sorted(position_of[i] for i in flat.planes)))  # fmt: skip
     count, columns = len(order), max(len(flats), 1)
-    cell = min(0.24, (_WIDTH - 1.9) / columns)
-    row_height = 0.20 if count <= 40 else 0.12
-    height = row_height * count + 0.95
-    edge = 0.25 if cell > 0.06 else 0.0
-    labels = _labels(configuration)
-    size = 8 if count <= 40 else 6
+    sizes = _Sizes.of(width, count)
+    figure = _new_figure(1, 1, sizes.dpi)  # fails early where matplotlib is missing
+    labels = _labels(configuration, sizes)
+    size = min(sizes.label, 8)
     left = 0.2 + max(_text_width(label, size) for label in labels)
-    width = max(left + cell * columns + 0.4, 5.2)
-    figure = _new_figure(width, height)
+    cell = min(0.24 if not sizes.narrow else sizes.row, (sizes.width - left - 0.1) / columns)
+    height = sizes.row * count + 0.95
+    across = max(left + cell * columns + 0.1, min(5.2, sizes.width))
+    figure.set_size_inches(across, height)
     axes = figure.add_axes(
-        (left / width, 0.55 / height, cell * columns / width, row_height * count / height)
+        (left / across, 0.55 / height, cell * columns / across, sizes.row * count / height)
     )
     from matplotlib.collections import PatchCollection
     from matplotlib.patches import Rectangle
 
+    # Thin cells fill their column: an outline or a gap would vary with the pixels.
+    edge, gap = (0.25, 0.06) if cell > 0.06 else (0.0, 0.0)
     for group_position, group in enumerate(classes.groups):
         rectangles = [
-            Rectangle((column + 0.06, position_of[i] + 0.06), 0.88, 0.88)
+            Rectangle((column + gap, position_of[i] + 0.06), 1 - 2 * gap, 0.88)
             for column, flat in enumerate(flats)
             for i in flat.planes
             if i in group
         ]
-        colour = _COLOURS[group_position % len(_COLOURS)]
-        axes.add_collection(
-            PatchCollection(rectangles, facecolor=colour, edgecolor=_INK, linewidth=edge)
-        )
+        colour = _group_colour(group_position, classes)
+        cells = PatchCollection(rectangles, facecolor=colour, edgecolor=_INK, linewidth=edge)
+        cells.set_snap(False)
+        axes.add_collection(cells)
     axes.set_xlim(0, columns)
     axes.set_ylim(count, 0)
     axes.set_yticks([p + 0.5 for p in range(count)], [labels[i] for i in order], fontsize=size)
     axes.set_xticks([])
-    axes.tick_params(length=0)
+    axes.tick_params(length=0, pad=3)
     border = 0
     for group in classes.groups[:-1]:
         border += len(group)
         axes.axhline(border, color=_INK, linewidth=0.8)
-    _column_blocks(axes, flats, cell)
+    _column_blocks(axes, flats, cell, sizes)
     names = _count(len(incidence.points), "point")
     if incidence.lines:
         names += " and " + _count(len(incidence.lines), "line")
     words = f"{names}, by the number of planes (above); planes by {classes.name}"
-    figure.text(0.15 / width, 0.2 / height, words, fontsize=8, color=_INK)
+    figure.text(0.15 / across, 0.2 / height, words, fontsize=sizes.legend, color=_INK)
     return figure
 
 
-def _column_blocks(axes: Any, flats: Sequence[SharedFlat], cell: float) -> None:
+def _column_blocks(axes: Any, flats: Sequence[SharedFlat], cell: float, sizes: _Sizes) -> None:
     """A line between blocks of columns, and the number of planes above each block."""
     starts = [
         j for j in range(len(flats)) if j == 0 or _hub_key(flats[j]) != _hub_key(flats[j - 1])
@@ -389,7 +486,7 @@ def _column_blocks(axes: Any, flats: Sequence[SharedFlat], cell: float) -> None:
         centre = (start + end) / 2
         raised = not raised if (centre - last_centre) * cell < 0.3 and start else False
         words = f"{'line ' if dimension else ''}{planes}"
-        axes.annotate(words, (centre, 0), xytext=(0, 14 if raised else 3), fontsize=8,
+        axes.annotate(words, (centre, 0), xytext=(0, 14 if raised else 3), fontsize=sizes.legend,
                       textcoords="offset points", ha="center", va="bottom")  # fmt: skip
         last_centre = centre
 

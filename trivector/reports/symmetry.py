@@ -1,6 +1,8 @@
 """Symmetries, comparisons and incidences, for people at a terminal."""
 
+from collections import Counter
 from collections.abc import Iterable, Sequence
+from typing import TYPE_CHECKING
 
 from rich.console import Group, RenderableType
 from rich.text import Text
@@ -12,7 +14,10 @@ from trivector.fields.protocol import Field
 from trivector.reports.blocks import answer, block
 from trivector.symmetry import Collineation, CollineationGroup, Comparison
 
-__all__ = ["comparison_report", "incidence_report", "symmetry_report"]
+if TYPE_CHECKING:
+    import networkx
+
+__all__ = ["comparison_report", "exchange_report", "incidence_report", "symmetry_report"]
 
 _MOST_FLATS = 60
 _MOST_ORBITS = 40
@@ -162,6 +167,66 @@ def incidence_report(incidence: Incidence) -> RenderableType:
         *block("Points", "coordinates; planes on it", _point_lines(incidence)),
         *(block("Lines", "basis; planes on it", _line_lines(incidence)) if incidence.lines else ()),
     )
+
+
+def exchange_report(
+    configuration: Configuration, graph: "networkx.Graph[int]", scope: str
+) -> RenderableType:
+    """Families of pairwise incident planes, and how they hang together.
+
+    Parameters
+    ----------
+    configuration : Configuration
+        The candidates.
+    graph : networkx.Graph
+        Of `exchange_graph`, with ``members`` at each node.
+    scope : str
+        What the families are.
+
+    Returns
+    -------
+    RenderableType
+        For ``rich.console.Console.print``.
+    """
+    return Group(
+        *_heading(configuration),
+        *block("Families", scope, _family_lines(graph)),
+        *block("Exchange graph", "joined by common planes", _exchange_lines(graph)),
+    )
+
+
+def _family_lines(graph: "networkx.Graph[int]") -> Iterable[tuple[str, str]]:
+    sizes = Counter(size for _, size in graph.nodes(data="planes"))
+    counted = ", ".join(f"{count} of {size} planes" for size, count in sorted(sizes.items()))
+    yield "families", counted or "none"
+    for node, members in list(graph.nodes(data="members"))[:_MOST_FLATS]:
+        yield str(node), members
+    if len(graph) > _MOST_FLATS:
+        yield "…", f"{len(graph) - _MOST_FLATS} more; --json lists them"
+
+
+def _exchange_lines(graph: "networkx.Graph[int]") -> Iterable[tuple[str, str]]:
+    import networkx
+
+    least = graph.graph["shared"]
+    joined = _count(graph.number_of_edges(), "pair")
+    yield "joined", f"{joined} with at least {_count(least, 'common plane')}"
+    parts = Counter(len(part) for part in networkx.connected_components(graph))
+    counted = ", ".join(f"{count} of {_families(size)}" for size, count in sorted(parts.items()))
+    yield "components", counted or "none"
+    common = Counter(shared for *_, shared in graph.edges(data="shared"))
+    if common:
+        yield (
+            "in common",
+            ", ".join(
+                f"{_count(shared, 'plane')} for {_count(count, 'pair')}"
+                for shared, count in sorted(common.items())
+            ),
+        )
+
+
+def _families(size: int) -> str:
+    return "1 family" if size == 1 else f"{size} families"
 
 
 def _everywhere(configuration: Configuration) -> str:

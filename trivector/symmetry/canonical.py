@@ -91,8 +91,9 @@ def canonical_form(configuration: Configuration, *, limit: int = MAX_LEAVES) -> 
     ------
     UsageError
         If the shared points of the planes do not span what the planes span and
-        the field is infinite, or more frames than the limit are needed:
-        `compare_configurations` works without frames.
+        the field is infinite: a frame would need further points, which could
+        be infinitely many alike. Or if more frames than the limit are needed.
+        `compare_configurations` and `equivalence_classes` work without frames.
 
     Notes
     -----

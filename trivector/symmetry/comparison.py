@@ -193,8 +193,9 @@ def compare_configurations(
             )
     if undecided:
         return Comparison(k, None, None, None, None, "search", undecided, seed)
+    more = " and cross ratios of the shared points" if target.cross_ratios else ""
     difference = (
-        "colour refinement of the incidence graph: the stable colourings differ"
+        f"colour refinement of the incidence graph{more}: the stable colourings differ"
         if invariant_only
         else f"all known invariants agree, and none of the {steps} partial images that had to be "
         "tried extends to a collineation"

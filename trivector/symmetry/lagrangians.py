@@ -24,6 +24,7 @@ from trivector.symmetry.collineations import (
 from trivector.symmetry.comparison import Comparison, compare_configurations
 from trivector.symmetry.linear_maps import canonical_matrix
 from trivector.symmetry.search import Predicate
+from trivector.symmetry.subspace_invariants import rational_difference
 
 __all__ = ["compare_subspaces", "subspace_collineations"]
 
@@ -190,8 +191,12 @@ def compare_subspaces(
         a collineation that carries L to L′ carries planes to planes, so it is
         one over K, or there is one over K with the same permutation
         (`trivector.symmetry.search`); over k it is looked for among those.
-        Undecided where the planes are infinitely many, or none, or do not
-        determine a collineation.
+        Where the planes are infinitely many, or none, a no rests on an
+        invariant: of the section, over the closure; of L over a finite field
+        with at most 4000 points in P(V), over that field only (how many planes
+        it has, and how many points v have which dim(L ∩ F_v), hyperplanes H
+        which dim(L ∩ ∧³H)). Undecided where these agree, or where the planes do
+        not determine a collineation.
 
     Raises
     ------
@@ -220,7 +225,11 @@ def compare_subspaces(
     over_k = None if arithmetic is None else False
     extension, planes, reason = _planes_of([first, second], reports, k, options)
     if not planes:
-        return answer(over_k, None, arithmetic, "planes in the subspaces", reason)
+        how = "planes in the subspaces"
+        if arithmetic is None:
+            arithmetic = rational_difference(first, second, reports)
+            how = f"invariants over {k.name}" if k.order is not None else how
+        return answer(None if arithmetic is None else False, None, arithmetic, how, reason)
     one, two = planes
 
     def search(conditions: Sequence[Predicate], *, commuting: bool) -> Comparison:
@@ -371,6 +380,7 @@ def _geometric_difference(first: SectionReport, second: SectionReport) -> str | 
         ("dimension of the section", first.projective_dimension, second.projective_dimension),
         ("degree of the section", first.degree, second.degree),
         ("section infinite", first.infinite, second.infinite),
+        ("Hilbert function", *_hilbert_functions(first, second)),
         ("planes over the closure", first.planes_over_closure, second.planes_over_closure),
         ("multiplicities over the closure", _multiplicities(first), _multiplicities(second)),
     )
@@ -378,6 +388,15 @@ def _geometric_difference(first: SectionReport, second: SectionReport) -> str | 
         if here is not None and there is not None and here != there:
             return f"{name}: {here} and {there}"
     return None
+
+
+def _hilbert_functions(first: SectionReport, second: SectionReport) -> tuple[Any, Any]:
+    """As far as both are known."""
+    here, there = first.hilbert_function, second.hilbert_function
+    if here is None or there is None:
+        return None, None
+    known = min(len(here), len(there))
+    return list(here[:known]), list(there[:known])
 
 
 def _multiplicities(report: SectionReport) -> dict[int, int] | None:

@@ -1,7 +1,9 @@
 """Colours of planes and shared flats that every collineation keeps."""
 
+from collections import Counter
 from collections.abc import Sequence
 from dataclasses import dataclass
+from typing import Any
 
 from trivector.configurations import Configuration, Incidence
 
@@ -33,8 +35,8 @@ class IncidenceColours:
     Parameters
     ----------
     configuration : Configuration
-    multiplicities : sequence of int
-        A number for each plane that must be kept, such as how often it occurs.
+    multiplicities : sequence
+        Something sortable for each plane that must be kept, such as how often it occurs.
     successor : sequence of int, optional
         A permutation of the planes with which only collineations that commute
         are asked for.
@@ -52,7 +54,7 @@ class IncidenceColours:
     def __init__(
         self,
         configuration: Configuration,
-        multiplicities: Sequence[int],
+        multiplicities: Sequence[Any],
         successor: Sequence[int] | None = None,
     ) -> None:
         incidence = Incidence(configuration)
@@ -84,6 +86,11 @@ class IncidenceColours:
     def cell(self, colouring: Colouring, colour: int) -> list[int]:
         """The planes with this colour, increasing."""
         return [i for i in range(self.planes) if colouring.colours[i] == colour]
+
+    @property
+    def largest_class(self) -> int:
+        """The number of planes of the most frequent colour."""
+        return max(Counter(self.start.colours[: self.planes]).values())
 
     def _refine(self, colours: tuple[int, ...]) -> Colouring:
         trace = []

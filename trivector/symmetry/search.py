@@ -30,6 +30,7 @@ from trivector.errors import BadReductionError
 from trivector.fields.linear import Rows
 from trivector.fields.protocol import Field, Reduction
 from trivector.subspaces import Plane
+from trivector.symmetry.cross_ratios import cross_ratio_signatures
 from trivector.symmetry.linear_maps import (
     MapSystem,
     find_invertible,
@@ -42,6 +43,7 @@ __all__ = ["Base", "DistinctPlanes", "Found", "LimitReachedError", "Search"]
 
 Predicate = Callable[[Any], bool]
 
+_LARGE_CLASS = 8
 _UNLIKELY = 100  # times _ATTEMPTS draws: an invertible map exists, so one is found
 
 
@@ -76,7 +78,16 @@ class DistinctPlanes:
         self.copies = tuple(tuple(indices) for indices in copies.values())
         self.index = {plane.rows: i for i, plane in enumerate(self.planes)}
         multiplicities = [len(indices) for indices in self.copies]
-        self.colours = IncidenceColours(Configuration(self.planes), multiplicities, conjugation)
+        distinct = Configuration(self.planes)
+        self.colours = IncidenceColours(distinct, multiplicities, conjugation)
+        # Incidences that tell nearly nothing: then cross ratios are worth their time.
+        self.cross_ratios = False
+        if self.colours.largest_class >= max(_LARGE_CLASS, 2 * len(self.planes) / 3):
+            signatures = cross_ratio_signatures(self.colours.incidence)
+            if signatures is not None and len(set(signatures)) > 1:
+                self.cross_ratios = True
+                kept = list(zip(multiplicities, signatures, strict=True))
+                self.colours = IncidenceColours(distinct, kept, conjugation)
 
     def __len__(self) -> int:
         return len(self.planes)
