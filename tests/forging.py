@@ -10,6 +10,7 @@ import json
 from collections import Counter
 from collections.abc import Sequence
 from itertools import combinations, permutations
+from random import Random
 from typing import Any
 
 from trivector.certificates import checker
@@ -265,3 +266,64 @@ def is_true(document: Certificate) -> bool:
         return all(truth.holds(claim) for claim in document["claims"])
     except (TrivectorError, KeyError, IndexError, TypeError, ValueError):
         return False  # not about planes at all
+
+
+# Random changes
+
+
+def nodes(value: Any) -> list[tuple[Any, Any]]:
+    """(container, key) of everything below a value."""
+    found = []
+    pairs = value.items() if isinstance(value, dict) else enumerate(value)
+    for key, below in pairs:
+        found.append((value, key))
+        if isinstance(below, dict | list):
+            found += nodes(below)
+    return found
+
+
+def changed_once(
+    made: Certificate, rng: Random, parts: Sequence[Sequence[str | int]]
+) -> Certificate:
+    """A sealed copy in which one thing is changed, below one of the parts (paths of keys).
+
+    A number is changed; an item of a list swapped with another, dropped or
+    doubled; a key dropped; a verdict turned round; a number made a fraction.
+    """
+    while True:
+        changed = copy.deepcopy(made)
+        top = changed
+        for key in rng.choice(parts):
+            top = top[key]
+        found = nodes(top)
+        if found:
+            _change(*rng.choice(found), rng)
+        if json.dumps(changed) != json.dumps(made):
+            return sealed(changed)
+
+
+def _change(container: Any, key: Any, rng: Random) -> None:
+    value = container[key]
+    if isinstance(value, list) and value and rng.random() < 0.6:
+        i, j = rng.randrange(len(value)), rng.randrange(len(value))
+        action = rng.randrange(4)
+        if action == 0:
+            value[i], value[j] = value[j], value[i]
+        elif action == 1:
+            del value[i]
+        elif action == 2:
+            value.insert(i, copy.deepcopy(value[j]))
+        else:
+            del value[i:]
+    elif isinstance(value, bool) or value is None:
+        container[key] = rng.choice([True, False, None])
+    elif isinstance(value, int):
+        others = [value + 1, value - 1, 0, 1, 2, 2 * value, -value, rng.randrange(10**6)]
+        container[key] = rng.choice(others)
+    elif isinstance(value, str) and "/" in value:
+        numerator, denominator = value.split("/")
+        container[key] = rng.choice([int(numerator), f"{denominator}/{abs(int(numerator)) or 1}"])
+    elif isinstance(container, dict):
+        del container[key]
+    else:
+        container[key] = rng.choice([0, 1, container[rng.randrange(len(container))]])
