@@ -4,13 +4,15 @@ import json
 import re
 from collections.abc import Callable
 from pathlib import Path
+from shlex import split
 
 import pytest
 
 import trivector
 from trivector import Configuration, Subspace
 from trivector.cli import main
-from trivector.cli.make import _OPTIONS, KINDS
+from trivector.cli.kinds import KINDS
+from trivector.cli.make import _OPTIONS
 from trivector.families import CLASSICAL_FAMILIES, ORBITS
 from trivector.fields import field_from_spec
 
@@ -24,6 +26,14 @@ Run = Callable[..., tuple[int, str, list[str]]]
 
 NEEDED = {"planes": ["--planes", "3"], "subspace": ["--dimension", "7"]}
 NEEDED["trivectors"] = ["--orbit", "tangent"]
+NEEDED["del-pezzo"] = ["--curve", "E1; E2; E3; E4; L12; L13; L14; L23; L24; L34"]
+NEEDED["symmetric"] = ["--length", "10"]
+
+REFUSED = {
+    "twenty": ("F_2", "F_4"),  # planes coincide
+    "twenty-two": ("Q", "F_2", "F_7", '{"modulus": "x^2+1"}'),  # it needs F_4
+    "ten": ("Q", "F_2", "F_4", "F_7", '{"modulus": "x^2+1"}'),
+}
 
 
 @pytest.fixture
@@ -53,9 +63,7 @@ def test_every_kind_over_every_field_is_read_back_or_refused(
 ) -> None:
     path = tmp_path / "made.json"
     code, out, err = run("make", kind, *NEEDED.get(kind, []), "--field", field, "-o", str(path))
-    if (kind, field) in {("twenty", "F_2"), ("twenty", "F_4")} or (
-        kind == "twenty-two" and field != "F_4"
-    ):
+    if field in REFUSED.get(kind, ()):
         assert (code, len(err)) == (2, 1)
         assert not path.exists()
         return
@@ -98,19 +106,24 @@ def test_a_family_and_its_members_of_one_seed_belong_together(
         "plane --field F_5",
         "subspace --dimension 11 --field F_8",
         "trivectors --orbit nonsplit --members 3",
+        "del-pezzo --length 17 --field F_101",
+        "del-pezzo --length 18 --field F_101 --rational",
+        "del-pezzo --curve 'E1;L12;L13;L23;y+z;x+y-2*z;x-2*y+z' --field F_11 --change random",
+        pytest.param("ten", marks=pytest.mark.long),
     ],
 )
 def test_the_same_seed_gives_the_same_bytes_and_the_source_repeats_it(
     run: Run, command: str
 ) -> None:
-    code, out, _ = run("make", *command.split(), "--seed", "6")
+    words = split(command)
+    code, out, _ = run("make", *words, "--seed", "6")
     assert code == 0
-    assert run("make", *command.split(), "--seed", "6")[1] == out
-    assert run("make", *command.split(), "--seed", "7")[1] != out
+    assert run("make", *words, "--seed", "6")[1] == out
+    assert run("make", *words, "--seed", "7")[1] != out
     source = json.loads(out)["source"]
     again = re.fullmatch(r"trivector (.*) \(version .*\)", source)
     assert again
-    assert run(*again[1].split())[1] == out
+    assert run(*split(again[1]))[1] == out
 
 
 def test_without_random_choices_the_seed_does_not_matter(run: Run) -> None:
@@ -200,3 +213,105 @@ def test_the_help_lists_every_kind_with_its_options(capsys: pytest.CaptureFixtur
     for orbit in ORBITS:
         assert orbit in out
     assert {option for kind in KINDS.values() for option in kind.options} == set(_OPTIONS)
+
+
+# Del Pezzo configurations
+
+
+def test_a_curve_with_rational_nodes_gives_labelled_planes_over_q(run: Run, tmp_path: Path) -> None:
+    path = str(tmp_path / "planes.json")
+    curve = "E1; L12; L13; L23; a: y+z; b: x+y-2*z; c: x-2*y+z"
+    assert run("make", "del-pezzo", "--curve", curve, "-o", path)[0] == 0
+    made = trivector.read(path)
+    assert isinstance(made, Configuration)
+    assert len(made.planes) == 17
+    assert made.labels[0] == "pencil p1"
+    assert made.labels[5].startswith("node ")
+    assert run("examine", path)[0] == 0
+
+
+def test_a_curve_with_conjugate_nodes_gives_the_lagrangian_and_over_the_extension_the_planes(
+    run: Run, tmp_path: Path
+) -> None:
+    path = str(tmp_path / "made.json")
+    assert run("make", "del-pezzo", "--length", "17", "--field", "F_5", "-o", path)[0] == 0
+    document = json.loads(Path(path).read_text("utf-8"))
+    assert document["kind"] == "subspace"
+    degrees = ", ".join(["1"] * 15 + ["2"])
+    assert f"closed points of degrees {degrees}; curve " in document["title"]
+    curve = document["title"].partition("curve ")[2]
+    code, out, _ = run("planes", path, "--json")
+    answer = json.loads(out)
+    assert (code, answer["degree"], answer["planes_over_base"]) == (0, 17, 15)
+    command = ("make", "del-pezzo", "--curve", curve, "--field", "F_25", "-o", path)
+    assert run(*command)[0] == 0
+    planes = trivector.read(path)
+    assert isinstance(planes, Configuration)
+    assert len(set(planes.planes)) == 17
+    assert run("examine", path)[0] == 0
+
+
+def test_over_a_number_field_nodes_that_were_conjugate_are_rational(
+    run: Run, tmp_path: Path
+) -> None:
+    path = str(tmp_path / "made.json")
+    assert run("make", "del-pezzo", "--length", "17", "--seed", "1", "-o", path)[0] == 0
+    curve = json.loads(Path(path).read_text("utf-8"))["title"].partition("curve ")[2]
+    _, out, _ = run("planes", path, "--json")
+    (residue,) = [p["residue_field"] for p in json.loads(out)["closed_points"] if p["degree"] > 1]
+    field = json.dumps(residue)
+    code, _, _ = run("make", "del-pezzo", "--curve", curve, "--field", field, "-o", path)
+    planes = trivector.read(path)
+    assert code == 0
+    assert isinstance(planes, Configuration)
+    assert len(set(planes.planes)) == 17
+    assert planes.field == field_from_spec(residue)
+    assert run("examine", path)[0] == 0
+
+
+def test_in_characteristic_2_the_title_does_not_promise_that_the_planes_are_all(
+    run: Run, tmp_path: Path
+) -> None:
+    path = str(tmp_path / "made.json")
+    lines = NEEDED["del-pezzo"]
+    assert run("make", "del-pezzo", *lines, "--field", "F_4", "-o", path)[0] == 0
+    title = json.loads(Path(path).read_text("utf-8"))["title"]
+    assert "in characteristic 2 a finite section has length 22, not 20" in title
+    code, out, _ = run("examine", path, "--json")
+    answer = json.loads(out)
+    # computed: 22 planes, the 20 and 2 more, over F_4 already
+    assert (code, answer["section"]["degree"], len(answer["missing"])) == (1, 22, 2)
+
+
+@pytest.mark.parametrize(
+    ("options", "message"),
+    [
+        ("", "needs one of --curve and --length"),
+        ("--curve E1 --length 17", "needs one of --curve and --length"),
+        ("--curve E1 --rational", "--rational goes with --length"),
+        ("--length 21", "length 21: curves in |−2K|"),
+        ("--length 17 --field F_2", "use a field with more elements"),
+        ("--curve E1;E2", "must add up to −2K = (6; 2, 2, 2, 2), not (0; -1, -1, 0, 0)"),
+        ("--curve E1;E5", "E5"),
+        ("--curve w^2", "is not a product of a number and powers of x, y, z"),
+        ("--curve x^7", "at most 6"),
+        ("--members 3 --length 17", "make del-pezzo has no option --members"),
+    ],
+)
+def test_a_curve_that_gives_nothing_is_refused_in_one_line(
+    run: Run, options: str, message: str
+) -> None:
+    assert message in refusal(run, "del-pezzo", *options.split())
+
+
+def test_a_curve_with_worse_than_nodes_is_refused_with_the_place(run: Run) -> None:
+    # Three lines through (1 : 2 : 3).
+    curve = "3*y-2*z; z-3*x; y-2*x; x*y+x*z-2*y*z; x-2*y+z"
+    assert "worse than a node, at" in refusal(run, "del-pezzo", "--curve", curve)
+
+
+def test_impossible_lengths_of_symmetric_planes_and_fields_of_ten_are_refused(run: Run) -> None:
+    assert "use 10, 11, 12, 13, 14, 15" in refusal(run, "symmetric", "--length", "16")
+    assert "needs --length" in refusal(run, "symmetric")
+    assert "needs a finite field, not Q" in refusal(run, "ten", "--field", "Q")
+    assert "at least 101 elements, not F_2; try F_1009" in refusal(run, "ten", "--field", "F_2")

@@ -10,7 +10,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from trivector.configurations import Configuration
-from trivector.errors import FieldError, UsageError
+from trivector.errors import EntryError, FieldError, UsageError
 from trivector.families.del_pezzo import (
     DelPezzoConfiguration,
     del_pezzo_configuration,
@@ -39,7 +39,7 @@ from trivector.families.ternary_forms import (
     multiplicity,
     multiply,
 )
-from trivector.fields import QQ, Field, finite_field, number_field, prime_field
+from trivector.fields import QQ, Field, field_from_spec, finite_field, number_field, prime_field
 from trivector.fields.linear import kernel
 from trivector.sections import LinearSection
 from trivector.subspaces import Plane
@@ -528,3 +528,20 @@ def test_nodal_curves_of_conjugate_nodes_over_q_have_a_span_over_q() -> None:
         found = random_del_pezzo(QQ, length, rng)
         assert found.length == every_plane(found) == length
         assert found.span.is_lagrangian()
+
+
+def test_equations_over_fields_with_a_root_are_read_back() -> None:
+    for spec in ("F_9", "F_16", {"modulus": "x^3-2"}):
+        field, rng = field_from_spec(spec), Random(1)
+        for degree in (1, 2, 3):
+            form = {}
+            for exponents in monomials(degree):
+                value = field.random_element(rng)
+                if value:
+                    form[exponents] = value
+            text = form_to_text(field, form)
+            assert form_from_text(field, text) == form, text
+    with pytest.raises(EntryError, match="not an element of this field"):
+        form_from_text(field_from_spec("F_9"), "(a+)*x")
+    with pytest.raises(EntryError, match="not a number of this field"):
+        form_from_text(QQ, "a*x")

@@ -14,6 +14,8 @@ from trivector.subspaces import Plane, Subspace
 
 __all__ = ["random_ten_planes"]
 
+_FEWEST_ELEMENTS = 101
+
 
 def random_ten_planes(field: FiniteField, rng: Random) -> tuple[Plane, ...]:
     """Ten pairwise incident planes, each random in the section by those before it.
@@ -21,8 +23,8 @@ def random_ten_planes(field: FiniteField, rng: Random) -> tuple[Plane, ...]:
     Parameters
     ----------
     field : FiniteField
-        With at least a few hundred elements; over smaller ones the section
-        that is finite in general often is not.
+        With at least 101 elements; over smaller ones the section that is
+        finite in general often is not.
     rng : random.Random
 
     Returns
@@ -35,7 +37,8 @@ def random_ten_planes(field: FiniteField, rng: Random) -> tuple[Plane, ...]:
     Raises
     ------
     FieldError
-        If a section had no further rational plane; draw again.
+        If the field is smaller, or a section had no further rational plane:
+        draw again.
 
     Notes
     -----
@@ -43,6 +46,11 @@ def random_ten_planes(field: FiniteField, rng: Random) -> tuple[Plane, ...]:
     finitely many planes; one of the rational ones is drawn. Cost: eight
     examinations of sections, a few seconds in all.
     """
+    if field.order < _FEWEST_ELEMENTS:
+        raise FieldError(
+            f"ten planes in general position need a field with at least {_FEWEST_ELEMENTS} "
+            f"elements, not {field.name}; try F_1009"
+        )
     units = [[int(i == j) for j in range(6)] for i in range(6)]
     planes = [
         Plane.from_rows(field, [units[i] for i in indices]) for indices in ((0, 1, 2), (0, 3, 4))

@@ -19,7 +19,7 @@ __all__ = ["components_from_text", "components_to_text", "form_from_text", "form
 
 _LARGEST_EXPONENT = 6
 _TERM = re.compile(r"[-+]?(?:\([^()]*\)|[^-+()])+")
-_FACTOR = re.compile(r"([0-9]+(?:/[0-9]+)?|a(?:\^[0-9]{1,3})?|\([^()]+\))|([xyz])(?:\^([0-9]))?")
+_FACTOR = re.compile(r"([0-9]+(?:/[0-9]+)?|a(?:\^[0-9]{1,3})?|\([^()xyz]+\))|([xyz])(?:\^([0-9]))?")
 
 
 def form_from_text(field: Field, text: str) -> dict[Exponents, Any]:
