@@ -109,7 +109,7 @@ class Field:
         return total % self.p if self.over else x
 
     def watch(self, x: Any) -> Any:  # numbers over ℚ grow: their cost is counted
-        self.spent += 200 + x.numerator.bit_length() * x.denominator.bit_length() // 8000
+        self.spent += 200 + x.numerator.bit_length() * x.denominator.bit_length() // 2000
         shape(self.spent <= MOST_WORK, "its numbers grow too long to be checked")
         return x
 
