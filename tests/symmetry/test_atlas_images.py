@@ -15,6 +15,9 @@ from trivector.symmetry import Comparison, compare_configurations, compare_subsp
 ATLAS = Path(__file__).parents[2] / "data" / "atlas"
 NAMES = sorted(path.stem for path in ATLAS.glob("*.json"))
 
+# Infinitely many planes over ℚ, none of them at hand, and no flag: not decided, and said so.
+UNDECIDED = [f"infinite-{family}-over-q" for family in ("ruling", "conics", "tangents")]
+
 
 def entry(name: str) -> Configuration | Subspace:
     found = trivector.read(ATLAS / f"{name}.json")
@@ -36,14 +39,14 @@ def check_images(name: str, count: int) -> None:
         if isinstance(found, Subspace):
             image = examples.image_of_space(found.field, g, found)
             answer = compare_subspaces(found, image)
-            # Where planes do not decide it is undecided; never "no".
-            assert answer.equivalent is not False
-            assert answer.over_closure is not False
-            assert (answer.exit_code == 3) is (answer.equivalent is None)
-            assert answer.equivalent or answer.limit
-            matrix = answer.collineation.matrix if answer.collineation else None
-            if matrix is not None:
-                assert examples.image_of_space(found.field, matrix, found) == image
+            if name in UNDECIDED:
+                assert (answer.equivalent, answer.over_closure, answer.exit_code) == (None, None, 3)
+                assert answer.limit
+                continue
+            assert (answer.equivalent, answer.over_closure, answer.exit_code) == (True, True, 0)
+            assert answer.collineation is not None
+            matrix = answer.collineation.matrix
+            assert examples.image_of_space(found.field, matrix, found) == image
             continue
         planes = [examples.image(found.field, g, plane) for plane in found.planes]
         rng.shuffle(planes)
@@ -59,7 +62,7 @@ def check_images(name: str, count: int) -> None:
 
 @pytest.mark.parametrize("name", NAMES)
 def test_random_images_of_an_entry_are_recognised(name: str) -> None:
-    check_images(name, 3)
+    check_images(name, 3 if isinstance(entry(name), Configuration) else 1)
 
 
 @pytest.mark.long

@@ -46,7 +46,7 @@ def random_ten_planes(field: FiniteField, rng: Random) -> tuple[Plane, ...]:
     finitely many planes; one of the rational ones is drawn. Cost: eight
     examinations of sections, a few seconds in all.
     """
-    if field.order < _FEWEST_ELEMENTS:
+    if (field.order or 0) < _FEWEST_ELEMENTS:
         raise FieldError(
             f"ten planes in general position need a field with at least {_FEWEST_ELEMENTS} "
             f"elements, not {field.name}; try F_1009"

@@ -4,6 +4,7 @@ from collections import Counter
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass, replace
 from math import lcm
+from random import Random
 from typing import Any
 
 from trivector.configurations import Configuration
@@ -22,6 +23,7 @@ from trivector.symmetry.collineations import (
     collineations,
 )
 from trivector.symmetry.comparison import Comparison, compare_configurations
+from trivector.symmetry.infinite_sections import algebra_difference, find_carrying_map
 from trivector.symmetry.linear_maps import canonical_matrix
 from trivector.symmetry.search import Predicate
 from trivector.symmetry.subspace_invariants import rational_difference
@@ -191,12 +193,13 @@ def compare_subspaces(
         a collineation that carries L to L′ carries planes to planes, so it is
         one over K, or there is one over K with the same permutation
         (`trivector.symmetry.search`); over k it is looked for among those.
-        Where the planes are infinitely many, or none, a no rests on an
-        invariant: of the section, over the closure; of L over a finite field
-        with at most 4000 points in P(V), over that field only (how many planes
-        it has, and how many points v have which dim(L ∩ F_v), hyperplanes H
-        which dim(L ∩ ∧³H)). Undecided where these agree, or where the planes do
-        not determine a collineation.
+        Where the planes are infinitely many, or none, a yes rests on a matrix
+        that `find_carrying_map` found, and a no on an invariant: of the section
+        or of the Lie algebra that keeps L, over the closure; of L over a finite
+        field with at most 4000 points in P(V), over that field only (how many
+        planes it has, and how many points v have which dim(L ∩ F_v), hyperplanes
+        H which dim(L ∩ ∧³H)). Undecided where these agree and no matrix was
+        found, or where the planes do not determine a collineation.
 
     Raises
     ------
@@ -226,7 +229,19 @@ def compare_subspaces(
     extension, planes, reason = _planes_of([first, second], reports, k, options)
     if not planes:
         how = "planes in the subspaces"
+        difference = algebra_difference(first, second)
+        if difference is not None:
+            return answer(False, False, difference, "an invariant of subspaces")
         if arithmetic is None:
+            known = [report.planes for report in reports if report.planes]
+            carries_it = _carries(first, second)
+            g = find_carrying_map(
+                first, second, carries_it, known if len(known) == 2 else [], Random(seed)
+            )
+            if g is not None:
+                how = "found by flags, or by frames of planes; ∧³g·L = L′ was checked"
+                made = answer(True, True, None, how)
+                return replace(made, collineation=Collineation((), g))
             arithmetic = rational_difference(first, second, reports)
             how = f"invariants over {k.name}" if k.order is not None else how
         return answer(None if arithmetic is None else False, None, arithmetic, how, reason)
