@@ -2,11 +2,11 @@
 
 import json
 import re
-from collections.abc import Callable
 from pathlib import Path
 from shlex import split
 
 import pytest
+from commands import Run
 
 import trivector
 from trivector import Configuration, Subspace
@@ -22,8 +22,6 @@ MOVED = str(ROOT / "data" / "twenty-one-moved.json")
 SEVEN = str(ROOT / "data" / "seven-planes-p6.json")
 SIXTEEN = str(ROOT / "data" / "f7-sixteen.json")
 
-Run = Callable[..., tuple[int, str, list[str]]]
-
 NEEDED = {"planes": ["--planes", "3"], "subspace": ["--dimension", "7"]}
 NEEDED["trivectors"] = ["--orbit", "tangent"]
 NEEDED["del-pezzo"] = ["--curve", "E1; E2; E3; E4; L12; L13; L14; L23; L24; L34"]
@@ -34,19 +32,6 @@ REFUSED = {
     "twenty-two": ("Q", "F_2", "F_7", '{"modulus": "x^2+1"}'),  # it needs F_4
     "ten": ("Q", "F_2", "F_4", "F_7", '{"modulus": "x^2+1"}'),
 }
-
-
-@pytest.fixture
-def run(capsys: pytest.CaptureFixture[str]) -> Run:
-    """Runs the command in this process: exit code, standard output, lines of standard error."""
-
-    def run_command(*argv: str) -> tuple[int, str, list[str]]:
-        code = main(argv)
-        captured = capsys.readouterr()
-        assert "Traceback" not in captured.err
-        return code, captured.out, captured.err.splitlines()
-
-    return run_command
 
 
 def refusal(run: Run, *argv: str) -> str:
