@@ -156,6 +156,7 @@ def test_subspaces_are_compared(run: Run, tmp_path: Path) -> None:
 
 def test_what_makes_no_sense_is_one_line_and_exit_code_2(run: Run, tmp_path: Path) -> None:
     space = written(tmp_path / "l.json", "subspace", "Q", [[1] * 20])
+    other = written(tmp_path / "m.json", "subspace", "Q", [[1] * 19 + [2]])
     for argv, word in (
         (["symmetries", TWENTY, "--semilinear"], "finite field"),
         (["symmetries", TWENTY, "--fixing", "20"], "plane 20"),
@@ -165,7 +166,7 @@ def test_what_makes_no_sense_is_one_line_and_exit_code_2(run: Run, tmp_path: Pat
         (["compare", TWENTY, SEVEN], "n = 7"),
         (["compare", TWENTY, space], "two documents"),
         (["compare", "-", "-"], "standard input"),
-        (["compare", space, space, "--semilinear"], "--semilinear"),
+        (["compare", space, other, "--semilinear"], "finite field"),
         (["compare", TWENTY], "FILE"),
     ):
         code, out, err = run(*argv)

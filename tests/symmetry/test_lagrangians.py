@@ -9,7 +9,8 @@ import pytest
 
 import trivector
 from trivector.configurations import Configuration
-from trivector.errors import MixedFieldsError, UndecidedError
+from trivector.errors import MixedFieldsError, UndecidedError, UsageError
+from trivector.families.del_pezzo import del_pezzo_configuration
 from trivector.fields import QQ, field_from_spec, prime_field
 from trivector.subspaces import Subspace
 from trivector.symmetry import collineations, compare_subspaces, subspace_collineations
@@ -211,3 +212,39 @@ def test_without_finitely_many_planes_the_question_is_undecided() -> None:
     assert "no plane" in str(answer.limit)
     with pytest.raises(MixedFieldsError):
         compare_subspaces(none, infinite)
+
+
+def test_a_conjugate_lagrangian_is_equivalent_by_a_semilinear_map_only() -> None:
+    # One coefficient of the curve in F_9 outside F_3: conjugate curves are not projectively equal.
+    k, rng = field_from_spec("F_9"), Random(3)
+    curve = "E1; E3; E4; L34; L23; y-(a+1)*z; L14; x*y+a*x*z-(a+1)*y*z"
+    space = del_pezzo_configuration(k, curve).span
+    conjugate = Subspace.span(k, 6, [[x**3 for x in row] for row in space.rows])
+    g = examples.random_invertible(k, 6, rng)
+    image = examples.image_of_space(k, g, conjugate)
+    answer = compare_subspaces(space, image, semilinear=True)
+    assert (answer.equivalent, answer.over_closure) == (True, True)
+    found = answer.collineation
+    assert found is not None
+    # 0 is tried first: there is no linear map from L to its image.
+    assert found.frobenius == 1
+    assert examples.image_of_space(k, found.matrix, conjugate) == image
+    other = examples.random_subspace(k, 6, space.dimension, rng)
+    assert compare_subspaces(space, other, semilinear=True).equivalent is False
+
+
+def test_semilinear_symmetries_of_a_lagrangian_are_those_of_its_planes() -> None:
+    k = field_from_spec("F_9")
+    twenty = Configuration(tuple(examples.over(k, examples.twenty_planes())))
+    group = subspace_collineations(twenty.span(), semilinear=True)
+    assert group.order == 2 * 1920
+    assert group.order == collineations(twenty, semilinear=True).order
+    small = Subspace.from_terms(k, 6, [{(0, 1, 2): 1}, {(0, 3, 4): 1, (1, 3, 5): 1}])
+    with pytest.raises(UndecidedError, match="leave them out"):
+        subspace_collineations(small, semilinear=True)
+    with pytest.raises(UsageError, match="finite field"):
+        compare_subspaces(
+            Subspace.from_terms(QQ, 6, [{(0, 1, 2): 1}]),
+            Subspace.from_terms(QQ, 6, [{(0, 1, 3): 1}]),
+            semilinear=True,
+        )

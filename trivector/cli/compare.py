@@ -62,11 +62,10 @@ def run(arguments: argparse.Namespace) -> int:
             seed=arguments.seed,
         )
     elif isinstance(first, Subspace) and isinstance(second, Subspace):
-        if arguments.semilinear:
-            raise UsageError('--semilinear needs documents of kind "planes"')
         comparison = compare_subspaces(
             first,
             second,
+            semilinear=arguments.semilinear,
             limits=limits_from(arguments),
             limit=arguments.max_steps,
             seed=arguments.seed,

@@ -73,10 +73,11 @@ def run(arguments: argparse.Namespace) -> int:
             seed=arguments.seed,
         )
     elif isinstance(document, Subspace):
-        if arguments.semilinear or arguments.fixing is not None:
-            raise UsageError('--semilinear and --fixing need a document of kind "planes"')
+        if arguments.fixing is not None:
+            raise UsageError('--fixing needs a document of kind "planes"')
         group = subspace_collineations(
             document,
+            semilinear=arguments.semilinear,
             limits=limits_from(arguments),
             limit=arguments.max_steps,
             seed=arguments.seed,

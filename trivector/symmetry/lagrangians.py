@@ -8,7 +8,7 @@ from random import Random
 from typing import Any
 
 from trivector.configurations import Configuration
-from trivector.errors import EntryError, UndecidedError
+from trivector.errors import EntryError, UndecidedError, UsageError
 from trivector.exterior.products import exterior_cube
 from trivector.fields.linear import rank, row_space, unit_rows
 from trivector.fields.protocol import Field
@@ -91,6 +91,7 @@ class _Planes:
 def subspace_collineations(
     subspace: Subspace,
     *,
+    semilinear: bool = False,
     limits: Limits | None = None,
     limit: int = MAX_STEPS,
     seed: int = 0,
@@ -107,6 +108,9 @@ def subspace_collineations(
     ----------
     subspace : Subspace
         With finitely many planes over the closure, at least one.
+    semilinear : bool
+        Admit v ↦ g·v^(p^j) too; over a finite field, where the planes in L are all
+        over it and span L.
     limits : Limits, optional
         For the planes.
     limit : int
@@ -124,7 +128,8 @@ def subspace_collineations(
     ------
     UndecidedError
         If the planes are not finitely many and at least one, or no field K
-        that can be worked with is known.
+        that can be worked with is known; with ``semilinear`` also if they are
+        not over k or do not span L.
 
     Examples
     --------
@@ -140,6 +145,11 @@ def subspace_collineations(
     if not planes:
         raise UndecidedError(f"the symmetries of a subspace are found by its planes, but {reason}")
     (planes_of_it,) = planes
+    if semilinear and not (extension.trivial and planes_of_it.span and not reason):
+        raise UndecidedError(
+            "semilinear maps that keep a subspace are found where all planes in it are over the "
+            "field and span it, which they do not here; leave them out"
+        )
     conditions: list[Predicate] = []
     how = "the planes span L"
     conjugation: Sequence[int] | None = None
@@ -152,6 +162,7 @@ def subspace_collineations(
         how += f"; each was asked whether it is defined over {k.name}"
     group = collineations(
         planes_of_it.configuration,
+        semilinear=semilinear,
         predicate=_all_of(conditions),
         conjugation=conjugation,
         limit=limit,
@@ -168,6 +179,7 @@ def compare_subspaces(
     first: Subspace,
     second: Subspace,
     *,
+    semilinear: bool = False,
     limits: Limits | None = None,
     limit: int = MAX_STEPS,
     seed: int = 0,
@@ -178,6 +190,9 @@ def compare_subspaces(
     Parameters
     ----------
     first, second : Subspace
+    semilinear : bool
+        Admit v ↦ g·v^(p^j) too, over F_q: linear maps are looked for from each
+        conjugate of L to L′. The permutation is empty if j > 0.
     limits : Limits, optional
         For the planes in them.
     limit : int
@@ -204,9 +219,47 @@ def compare_subspaces(
     Raises
     ------
     MixedFieldsError
+    UsageError
+        If semilinear maps are asked for over an infinite field.
     """
     check_same_space(first, second)
-    k = first.field
+    options: dict[str, Any] = {"limits": limits, "seed": seed, "on_progress": on_progress}
+    if not semilinear:
+        return _compare_linearly(first, second, options, limit)
+    found = []
+    for j, conjugate in enumerate(_conjugates(first)):
+        answer = _compare_linearly(conjugate, second, options, limit)
+        if answer.equivalent and answer.collineation is not None:
+            # The planes of the conjugate are sorted anew: their permutation is not that of L.
+            order = () if j else answer.collineation.permutation
+            made = replace(answer.collineation, permutation=order, frobenius=j)
+            return replace(answer, collineation=made)
+        found.append(answer)
+    # Of no and undecided, undecided is what is known of all together.
+    closures = [answer.over_closure for answer in found]
+    closure = True if True in closures else None if None in closures else False
+    undecided = [answer for answer in found if answer.equivalent is None]
+    return replace((undecided or found)[0], over_closure=closure)
+
+
+def _conjugates(subspace: Subspace) -> list[Subspace]:
+    """L^(p^j), j = 0, 1, …, e − 1, over F_q, q = p^e."""
+    k = subspace.field
+    if k.order is None:
+        raise UsageError(f"semilinear maps need a finite field, not {k.name}; leave them out")
+    found, size = [], 1
+    while size < k.order:
+        rows = [[x**size for x in row] for row in subspace.rows]
+        found.append(Subspace.span(k, subspace.n, rows))
+        size *= k.characteristic
+    return found
+
+
+def _compare_linearly(
+    first: Subspace, second: Subspace, options: dict[str, Any], limit: int
+) -> Comparison:
+    """`compare_subspaces` without semilinear maps."""
+    k, seed = first.field, options["seed"]
 
     def answer(
         equivalent: bool | None, closure: bool | None, why: str | None, how: str, limit: str = ""
@@ -219,7 +272,6 @@ def compare_subspaces(
     difference = _linear_difference(first, second)
     if difference is not None:
         return answer(False, False, difference, "an invariant of subspaces")
-    options: dict[str, Any] = {"limits": limits, "seed": seed, "on_progress": on_progress}
     reports = [LinearSection(space).examine(**options) for space in (first, second)]
     difference = _geometric_difference(*reports)
     if difference is not None:
