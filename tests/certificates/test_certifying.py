@@ -23,6 +23,8 @@ from trivector.certificates import (
 )
 from trivector.configurations import Examination
 from trivector.exterior import Trivector
+from trivector.exterior.products import minors
+from trivector.families.residues import ResidueRing
 from trivector.fields import QQ, Field, field_from_spec
 from trivector.sections import Limits, SectionReport
 
@@ -297,3 +299,46 @@ def test_another_version_of_the_format_has_its_own_error(version: int, word: str
     made = certify_trivectors([Trivector.from_terms(QQ, 6, {(0, 1, 2): 1})])
     with pytest.raises(ValueError, match=word):
         checker.load(json.dumps(sealed(made, format=version)))
+
+
+# Planes over extensions of a field that is not a prime field
+
+
+@pytest.mark.parametrize(
+    ("spec", "modulus"),
+    [
+        ("F_4", ["a", 1, 1]),  # F_16 over F_4
+        ("F_9", ["-a", 0, 1]),  # F_81 over F_9: a is no square
+        ({"modulus": "x^2-2"}, [-3, 0, 1]),  # √3 over Q(√2)
+        ({"modulus": "x^2-2"}, ["-a", 0, 0, 1]),  # the cube root of √2
+        ("Q", [-2, 0, 0, 1]),
+    ],
+    ids=str,
+)
+def test_conjugate_planes_over_any_field_are_certified(spec: object, modulus: list[object]) -> None:
+    field = field_from_spec(spec)
+    polynomial = [field.element(c) for c in modulus]
+    ring = ResidueRing(field, polynomial)
+    theta = ring.residue([field.zero, field.one])
+    zero, one = ring.zero, ring.one
+    rows = [
+        [one, zero, zero, theta, zero, one],
+        [zero, one, zero, one, theta, theta],
+        [zero, zero, one, theta * theta, one, theta],
+    ]
+    entries = [minor.coefficients for minor in minors(rows)]
+    degree = len(modulus) - 1
+    space = Subspace.span(field, 6, [[entry[j] for entry in entries] for j in range(degree)])
+    assert space.dimension == degree
+    made = certified_section(space, limits=Limits())
+    claim = claim_of(made, "all planes")
+    assert (claim["planes_over_closure"], claim["planes_over_base"]) == (degree, 0)
+    (point,) = claim["points"]
+    assert len(point["modulus"]) == degree + 1
+    if not isinstance(field.numbers(field.one), list):
+        return
+    # The modulus replaced by one that has a root in the field.
+    reducible = [field.numbers(field.zero)] * degree + [field.numbers(field.one)]
+    wrong = {**claim, "points": [{**point, "modulus": reducible}]}
+    claims = [wrong if c["claim"] == "all planes" else c for c in made["claims"]]
+    assert not all(verdict for _, verdict, _ in verdicts(sealed(made, claims=claims)))
