@@ -10,6 +10,8 @@ import pytest
 from commands import Run
 from forging import sealed
 
+from trivector.certificates import checker
+
 ROOT = Path(__file__).parents[2]
 TWENTY = str(ROOT / "data" / "twenty-planes.json")
 SIXTEEN = str(ROOT / "data" / "f7-sixteen.json")
@@ -126,3 +128,20 @@ def test_no_such_file_and_a_directory_are_refused(run: Run, tmp_path: Path) -> N
         assert (code, out, len(err)) == (2, "", 1)
         assert str(path) in err[0]
     assert run("recheck")[0] == 2
+
+
+def test_more_work_can_be_allowed(
+    run: Run, tmp_path: Path, monkeypatch: pytest.MonkeyPatch, capsys: pytest.CaptureFixture[str]
+) -> None:
+    file = tmp_path / "certificate.json"
+    certificate(run, file, "examine", TWENTY)
+    monkeypatch.setattr(checker, "MOST_WORK", 10**6)
+    code, out, err = run("recheck", str(file))
+    assert (code, out, len(err)) == (2, "", 1)
+    assert err[0].endswith("more work has to be allowed; give --work N")
+    assert run("recheck", str(file), "--work", "1000")[0] == 0
+    assert checker.MOST_WORK == 10**6
+    assert checker.main(str(file)) == 2
+    assert "more work has to be allowed" in capsys.readouterr().err
+    assert checker.main(str(file), "1000") == 0
+    assert checker.main(str(file), "many") == 2
