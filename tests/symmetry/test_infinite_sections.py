@@ -11,8 +11,9 @@ from trivector.exterior.products import exterior_cube
 from trivector.fields import QQ, Field, field_from_spec, prime_field
 from trivector.sections import Limits
 from trivector.subspaces import Subspace
-from trivector.symmetry import compare_subspaces
+from trivector.symmetry import compare_subspaces, split_quadrics
 from trivector.symmetry.infinite_sections import canonical_flag, stabiliser_algebra
+from trivector.symmetry.ternary import find_ternary_map
 
 NAMES = ["point", "hyperplane", "lines", "ruling", "conics", "tangents"]
 FAMILIES = dict(zip(NAMES, examples.families(), strict=True))
@@ -118,15 +119,62 @@ def test_over_larger_fields_too(spec: str, name: str) -> None:
     assert all(recognised(space, Random(f"{name}{i}")) for i in range(3))
 
 
+NO_SWEEP = Limits(max_points=0)
+
+
 @pytest.mark.parametrize("name", NAMES)
-def test_over_q_three_families_are_recognised_by_their_flags_and_three_undecided(name: str) -> None:
-    found = recognised(FAMILIES[name].lagrangian(QQ), Random(name))
-    assert found is (True if name in NAMES[:3] else None)
+@pytest.mark.parametrize("spec", ["Q", "F_7", "F_2305843009213693951"])
+def test_without_knowing_planes_images_of_every_family_are_recognised(spec: str, name: str) -> None:
+    # By flags; as ternary cubics; by hyperbolic pairs.
+    space = FAMILIES[name].lagrangian(field_from_spec(spec))
+    assert recognised(space, Random(name), NO_SWEEP) is True
 
 
-def test_without_a_sweep_nothing_is_found_and_nothing_is_denied() -> None:
-    space = FAMILIES["ruling"].lagrangian(prime_field(3))
-    assert recognised(space, Random(1), Limits(max_points=0)) is None
+@pytest.mark.parametrize(
+    ("name", "spec"),
+    [
+        ("lines", "F_9"),
+        ("lines", "F_4"),
+        ("point", GAUSS),
+        pytest.param("conics", GAUSS, marks=pytest.mark.long),
+        pytest.param("tangents", "F_49", marks=pytest.mark.long),
+    ],
+    ids=str,
+)
+def test_over_a_field_with_a_root_too(name: str, spec: Any) -> None:
+    space = FAMILIES[name].lagrangian(field_from_spec(spec))
+    assert recognised(space, Random(name), NO_SWEEP) is True
+
+
+@pytest.mark.long
+@pytest.mark.parametrize("name", ["ruling", "conics", "tangents"])
+def test_more_images_over_q_are_recognised(name: str) -> None:
+    space, rng = FAMILIES[name].lagrangian(QQ), Random(name)
+    assert all(recognised(space, rng, NO_SWEEP) for _ in range(8))
+
+
+def test_in_characteristic_2_without_a_sweep_nothing_is_found_and_nothing_is_denied() -> None:
+    space = FAMILIES["ruling"].lagrangian(prime_field(2))
+    assert recognised(space, Random(1), NO_SWEEP) is None
+
+
+def test_the_invariant_form_of_the_ruling_is_the_quadric_up_to_scale() -> None:
+    # The planes of L are isotropic for it: B vanishes on W × W.
+    field = QQ
+    family, rng = FAMILIES["ruling"], Random(2)
+    algebra = stabiliser_algebra(family.lagrangian(field))
+    form = split_quadrics._invariant_form(field, 6, algebra)
+    assert form is not None
+    for _ in range(5):
+        rows = field.matrix(family.random_plane(field, rng).rows, 6)
+        assert not any(x for row in (rows * form * rows.transpose()).tolist() for x in row)
+
+
+def test_a_subspace_with_another_algebra_is_none_of_these() -> None:
+    space = FAMILIES["point"].lagrangian(QQ)
+    algebras = [stabiliser_algebra(space)] * 2
+    assert find_ternary_map(space, space, algebras) == []
+    assert list(split_quadrics.find_quadric_map(space, space, algebras)) == []
 
 
 def test_the_lie_algebra_tells_families_apart_over_the_closure() -> None:

@@ -13,8 +13,10 @@ from trivector.fields.linear import Rows, kernel, meet_rows, rank, row_space, un
 from trivector.fields.protocol import Field
 from trivector.subspaces import Plane, Subspace
 from trivector.symmetry.comparison import compare_configurations
-from trivector.symmetry.linear_maps import canonical_matrix
+from trivector.symmetry.linear_maps import canonical_matrix, inverse
 from trivector.symmetry.search import Predicate
+from trivector.symmetry.split_quadrics import find_quadric_map
+from trivector.symmetry.ternary import find_ternary_map
 
 __all__ = ["algebra_difference", "canonical_flag", "find_carrying_map", "stabiliser_algebra"]
 
@@ -113,7 +115,7 @@ def find_carrying_map(
     planes: Sequence[Sequence[Plane]],
     rng: Random,
 ) -> Rows | None:
-    """A matrix g with ∧³g·L = L′, by canonical flags, or by frames of planes.
+    """A matrix g with ∧³g·L = L′, by canonical flags, Lie algebras, or frames of planes.
 
     Parameters
     ----------
@@ -132,7 +134,8 @@ def find_carrying_map(
     Notes
     -----
     If a flag determines L, as the point, the hyperplane and the plane of three
-    of the classical families do, every map between the flags is one. If the
+    of the classical families do, every map between the flags is one. For the
+    others see `find_ternary_map` and `find_quadric_map`. If the
     group of L is transitive on general quadruples or quintuples of its planes, as
     for the families with parameters in P² and P³, two random ones are often
     carried to each other by a map that carries L to L′.
@@ -140,6 +143,11 @@ def find_carrying_map(
     g = _between_flags(first.field, first.n, canonical_flag(first), canonical_flag(second))
     if g is not None and carries(g):
         return canonical_matrix(first.field, g.tolist())
+    algebras = [stabiliser_algebra(space) for space in (first, second)]
+    candidates = (find_ternary_map, find_quadric_map)
+    for g in (g for find in candidates for g in find(first, second, algebras)):
+        if carries(g):
+            return canonical_matrix(first.field, g.tolist())
     if any(len(listed) < max(_SIZES) for listed in planes) or not planes:
         return None
     here, there = planes
@@ -167,7 +175,7 @@ def _between_flags(
     if rank(field, bases[0], n) < n or rank(field, bases[1], n) < n:
         return None
     source, target = (field.matrix(list(zip(*rows, strict=True)), n) for rows in bases)
-    return target * source.inv()
+    return target * inverse(field, source)
 
 
 def _adapted_basis(field: Field, n: int, flag: tuple[Rows, Rows]) -> list[Sequence[Any]]:

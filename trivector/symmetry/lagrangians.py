@@ -291,7 +291,7 @@ def _compare_linearly(
                 first, second, carries_it, known if len(known) == 2 else [], Random(seed)
             )
             if g is not None:
-                how = "found by flags, or by frames of planes; ∧³g·L = L′ was checked"
+                how = "found by flags, Lie algebras or frames of planes; ∧³g·L = L′ was checked"
                 made = answer(True, True, None, how)
                 return replace(made, collineation=Collineation((), g))
             arithmetic = rational_difference(first, second, reports)

@@ -234,6 +234,14 @@ def canonical_matrix(field: Field, rows: Sequence[Sequence[Any]]) -> Rows:
     return tuple(tuple(x / leading for x in row) for row in rows)
 
 
+def inverse(field: Field, matrix: Any) -> Any:
+    """Of an invertible matrix, over any field."""
+    n = matrix.nrows()
+    rows = [[*row, *unit] for row, unit in zip(matrix.tolist(), unit_rows(field, n), strict=True)]
+    reduced, _ = field.matrix(rows, 2 * n).rref()
+    return field.matrix([row[n:] for row in reduced.tolist()], n)
+
+
 def image_rows(field: Field, matrix: Any, rows: Rows, n: int) -> Rows:
     """Canonical rows of {g·w}, g acting on columns."""
     reduced, rank = (field.matrix(rows, n) * matrix.transpose()).rref()
