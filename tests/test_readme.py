@@ -141,7 +141,7 @@ def test_the_main_job_of_the_readme_answers_yes() -> None:
 def test_the_command_for_the_tests_installs_what_they_need_and_runs_all_of_them() -> None:
     _, install, last = INSTALLING[1].strip().split(" && ")
     assert install.endswith("-e '.[test]'")
-    assert last == ".venv/bin/python -m pytest"
+    assert last == ".venv/bin/python -m pytest -n auto"
     project = tomllib.loads((ROOT / "pyproject.toml").read_text("utf-8"))
     needed = project["project"]["optional-dependencies"]["test"]
     assert {re.match("[a-z-]+", name)[0] for name in needed} >= {"pytest", "hypothesis"}
