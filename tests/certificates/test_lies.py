@@ -556,3 +556,28 @@ def test_a_changed_file_with_its_old_digest_is_rejected(twenty: Certificate) -> 
     assert "SHA-256" in why_rejected(made)
     assert accepted(sealed(made))
     assert verdicts(twenty) == verdicts(sealed(made))
+
+
+def test_evidence_that_is_not_read_is_not_let_through(
+    twenty: Certificate, nineteen: Certificate
+) -> None:
+    # A plane of no section at all beside a true verdict would be taken for one that was checked.
+    other = [examples.unit(i) for i in range(3)]
+    alpha = Trivector.from_terms(QQ, 6, {(0, 1, 2): 1, (3, 4, 5): 1})
+    ruling = certify_examination(trivector.read(DATA / "quadric-ruling-twelve.json").examine())
+    everything = sectioned(Subspace.span(F3, 6, [examples.unit(i, 20) for i in range(20)]))
+    for honest, name, more in [
+        (twenty, "complete", {"further": other}),
+        (nineteen, "complete", {"further": other}),
+        (nineteen, "complete", {"further": "none"}),
+        (certify_trivectors([alpha]), "decomposable", {"plane": other}),
+        (ruling, "infinite", {"pencil": [other, other]}),
+        (everything, "infinite", {"degree": 2}),
+        (everything, "infinite", {"dimension": 3}),
+    ]:
+        assert accepted(honest)
+        assert "not checked" in why_rejected(changed(honest, name, **more)), (name, more)
+    for more in ({"rows": other}, {"degree": 2}, {"irreducible": {"value": 2}}, {"modulus": []}):
+        lie = copy.deepcopy(twenty)
+        claim_of(lie, "all planes")["points"][0].update(more)
+        assert "not checked" in why_rejected(sealed(lie)), more

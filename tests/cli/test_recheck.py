@@ -145,3 +145,15 @@ def test_more_work_can_be_allowed(
     assert "more work has to be allowed" in capsys.readouterr().err
     assert checker.main(str(file), "1000") == 0
     assert checker.main(str(file), "many") == 2
+
+
+@pytest.mark.parametrize(
+    ("key", "value"), [("uncertified", 5), ("uncertified", [5]), ("field", []), ("sha256", 7)]
+)
+def test_what_is_shown_must_have_its_form(run: Run, tmp_path: Path, key: str, value: Any) -> None:
+    file = tmp_path / "certificate.json"
+    made = certificate(run, file, "examine", SIXTEEN)
+    file.write_text(json.dumps({**made, key: value}), "utf-8")
+    code, out, err = run("recheck", str(file))
+    assert (code, out, len(err)) == (2, "", 1)
+    assert f"{key}: a" in err[0]

@@ -47,6 +47,7 @@ from typing import Any
 FORMAT, LARGEST_FILE, MOST_WORK = 1, 16 * 2**20, 4 * 10**9  # bytes; at most about a minute
 NAMES = "incidence, span, decomposable, all planes, infinite, complete, collineation"
 MALFORMED = (AttributeError, LookupError, OSError, RecursionError, TypeError, ValueError)
+EVIDENCE = {"functionals": ("degree", "functionals"), "pencil": ("pencil",), "dimension": ()}
 H_VECTOR = {6: (1, 10, 20, 10, 1), 7: (1, 22, 113, 190, 113, 22, 1)}
 
 
@@ -136,8 +137,7 @@ class Field:
 
     def signed(self, indices: Any, x: Any) -> Any:
         """x times the sign of the permutation that sorts the indices."""
-        odd = sum(a > b for a, b in combinations(indices, 2)) % 2
-        return self.neg(x) if odd else x
+        return self.neg(x) if sum(a > b for a, b in combinations(indices, 2)) % 2 else x
 
     def dot(self, form: Any, vector: Any) -> Any:
         total = self.zero
@@ -404,7 +404,7 @@ class Check:
         holds(any(x != self.field.zero for x in vector), "the trivector is zero")
         forms = self.field.wedge_forms(self.n, vector, 1)
         plane = list(self.field.echelon(self.field.kernel(forms, self.n), self.n).values())
-        words = agree({"value": len(plane) == 3}, claim, "index", "plane")
+        words = agree({"value": len(plane) == 3}, claim, "index", *["plane"][: len(plane) == 3])
         holds(len(plane) != 3 or self.plane(claim["plane"], "plane") == plane, "another plane")
         return f"trivector {claim['index']}: {words}"
 
@@ -429,8 +429,9 @@ class Check:
 
     def point(self, base: Any, data: Any, where: str) -> Point:
         f = [base.parse(c) for c in listed(data.get("modulus", []), where, 0, 463)]
-        good = len(f) > 2 and f[-1] == base.one and "plane" not in data
-        shape(not f or good, f"{where}: a monic modulus, of degree ≥ 2, of a plane not given")
+        shape(not f or (len(f) > 2 and f[-1] == base.one), f"{where}: monic modulus, degree ≥ 2")
+        read = ["plane"] if "plane" in data else ["rows", *["modulus", "irreducible"][: 2 * len(f)]]
+        agree({}, data, "multiplicity", "nilpotents", *read)
         ring: Any = Quotient(base, f) if f else base
         size = natural(data.get("multiplicity", 1), 462, where, 1)
         if "plane" in data:
@@ -467,8 +468,7 @@ class Check:
         top, rank = self.ranks(k, small, listed(claim["hilbert"], "hilbert", 2, 40))
         holds(top <= length, f"at most {top} is proved, while the points have length {length}")
         holds(rank == length, f"the points impose {rank} conditions, not {length}")
-        self.points = points
-        degrees = [point.degree for point in points]
+        self.points, degrees = points, [point.degree for point in points]
         found = {"planes_over_closure": sum(degrees), "planes_over_base": degrees.count(1)}
         found |= {"length": length, "reduced": all(point.size == 1 for point in points)}
         words = agree(found, claim, "points", "place", "hilbert")
@@ -508,7 +508,7 @@ class Check:
 
     def check_infinite(self, claim: Any) -> str:  # theorem 3
         h, m, field, weight = H_VECTOR[self.n], len(self.basis), self.field, self.field.weight
-        by = next((by for by in ("functionals", "pencil") if by in claim), "dimension")
+        by = next((by for by in EVIDENCE if by in claim), "dimension")
         if by == "dimension":
             holds(m >= self.size - 3 * (self.n - 3) + 1, f"dim L = {m} is too small for that")
         elif by == "pencil":
@@ -529,23 +529,23 @@ class Check:
                 values = [field.dot(quadric.values(), [f[i] for i in at]) for f in functionals]
                 holds(all(x == field.zero for x in values), "a functional does not vanish on I")
             holds(len(field.echelon(functionals, len(place))) > sum(h[: d + 1]), "proves nothing")
-        words, self.infinite = agree({"by": by}, claim, "degree", "functionals", "pencil"), True
+        words, self.infinite = agree({"by": by}, claim, *EVIDENCE[by]), True
         return f"infinitely many planes over the closure, {words}"
 
     def check_complete(self, claim: Any) -> str:
         holds(self.incident, "pairwise incidence has to be proved before")
-        closure, base = False if self.infinite else None, None
+        closure, base, read = False if self.infinite else None, None, ["further"]
         if self.points is not None:
             rational = [self.field.echelon(p.rows, self.n) for p in self.points if not p.f]
             base = all(list(rows.values()) in self.planes for rows in rational)
-            closure = base and len(rational) == len(self.points)
+            closure, read = base and len(rational) == len(self.points), []
         elif "further" in claim:
             plane = self.plane(claim["further"], "further")
             new = plane not in self.planes and self.contains(self.plucker(plane))
             holds(new, "further: one of the given planes, or not in the section")
             closure = base = False
         holds(closure is not None, "neither all planes, nor a further one, nor infinity is proved")
-        return agree({"over_closure": closure, "over_base": base}, claim, "further")
+        return agree({"over_closure": closure, "over_base": base}, claim, *read)
 
 
 def agree(found: dict[str, Any], claim: dict[str, Any], *evidence: str) -> str:

@@ -40,6 +40,12 @@ def run(arguments: argparse.Namespace) -> int:
     checker.MOST_WORK = usual * arguments.work
     try:
         document = checker.load(text)
+        field, digest = document["field"], document["sha256"]
+        notes = document.get("uncertified", [])
+        checker.shape(isinstance(field, dict), "field: an object")
+        checker.shape(isinstance(digest, str), "sha256: a text")
+        texts = isinstance(notes, list) and all(isinstance(note, str) for note in notes)
+        checker.shape(texts, "uncertified: a list of texts")
         try:
             found = [
                 {"claim": name, "holds": verdict, "words": words}
@@ -58,11 +64,11 @@ def run(arguments: argparse.Namespace) -> int:
     holds = all(claim["holds"] for claim in found)
     data = {
         "kind": "recheck",
-        "field": document["field"],
-        "sha256": document["sha256"],
+        "field": field,
+        "sha256": digest,
         "holds": holds,
         "claims": found,
-        "uncertified": document.get("uncertified", []),
+        "uncertified": notes,
     }
 
     def report() -> Any:
